@@ -1,0 +1,33 @@
+/**
+ * What the plant asks of a rotor.
+ *
+ * To write a new rotor: declare how many continuous states it keeps, and fill `loads` (and the states' derivatives)
+ * from the wind, the shaft and the blades. Keep parameters only, never memory; allocate nothing in `loads`.
+ */
+import type { WindField } from './wind/wind.ts';
+
+export interface RotorLoads {
+  /** About the rotor axis, positive in the direction of turning, N m. */
+  torque: number;
+  /** Downwind, N. */
+  thrust: number;
+}
+
+export interface Rotor {
+  readonly stateCount: number;
+  /**
+   * Loads at time `t` (s).
+   * @param rotorSpeed rad/s
+   * @param pitch the state vector `x` holds blade pitch angles (rad) at `pitchAt[0..B-1]`
+   * @param towerVelocity tower-top velocity downwind, m/s
+   */
+  loads(
+    t: number,
+    wind: WindField,
+    rotorSpeed: number,
+    towerVelocity: number,
+    x: ArrayLike<number>,
+    pitchAt: ArrayLike<number>,
+    out: RotorLoads,
+  ): void;
+}

@@ -1,0 +1,16 @@
+/**
+ * A wind field over the rotor. `x` downwind, `y` left when looking downwind, `z` up, origin at the hub.
+ *
+ * To write a new wind condition: one file that exports a function returning a `WindField`; add it to the kinds in
+ * `scenarios/schema/wind.ts`. Fields add (`sum.ts`). A field keeps parameters and tables, never memory.
+ */
+export interface WindField {
+  /** Wind components (u, v, w) in m/s at time `t` (s) and at (y, z) in m from the hub, written to `out`. */
+  velocity(t: number, y: number, z: number, out: Float64Array): void;
+  /** Rotor-effective wind speed, m/s: what the `surface` rotor feels. */
+  rotorMean(t: number): number;
+  /** Instants in (0, end) at which the field or its slope jumps; the clock ends integration intervals there. */
+  breakpoints(end: number): number[];
+  /** Instants worth showing to a reader, such as a gust's start, peak and end. */
+  marks(): readonly { time: number; text: string }[];
+}
