@@ -1,3 +1,10 @@
+/** An instant worth showing to a reader; `kind` lets code find it. */
+export interface WindMark {
+  readonly time: number;
+  readonly text: string;
+  readonly kind?: 'gust start' | 'gust peak' | 'gust end' | 'other';
+}
+
 /**
  * A wind field over the rotor. `x` downwind, `y` left when looking downwind, `z` up, origin at the hub.
  *
@@ -9,8 +16,11 @@ export interface WindField {
   velocity(t: number, y: number, z: number, out: Float64Array): void;
   /** Rotor-effective wind speed, m/s: what the `surface` rotor feels. */
   rotorMean(t: number): number;
-  /** Instants in (0, end) at which the field or its slope jumps; the clock ends integration intervals there. */
+  /**
+   * Instants in (0, end), rising, at which the field or one of its derivatives jumps; the clock ends integration
+   * intervals there. At a jump itself the field takes its new value (it is continuous from the right).
+   */
   breakpoints(end: number): number[];
   /** Instants worth showing to a reader, such as a gust's start, peak and end. */
-  marks(): readonly { time: number; text: string }[];
+  marks(): readonly WindMark[];
 }
