@@ -72,6 +72,8 @@ export interface Measured {
   /** Electrical power, W. */
   electricalPower: number;
   gridConnected: boolean;
+  /** Whether the safety chain has taken the machine over. */
+  safetyChainActive: boolean;
   /** The state that the supervisor asks for, an index into OPERATING_STATES. */
   state: number;
   /** Set-points handed over by the supervisor: generator speed, rad/s, and electrical power, W. */
@@ -122,7 +124,7 @@ export interface Controller {
 export type ControllerFactory<S = unknown> = (settings: S, machine: Machine) => Controller;
 
 /**
- * Orders that stand above the control law while a stop (or start-up) is in progress.
+ * Orders that stand above the control law while a stop or a start-up is in progress.
  * The clock owns them and resets them to "nothing ordered" before each step of their author.
  */
 export interface Orders {
@@ -130,20 +132,23 @@ export interface Orders {
   active: boolean;
   /** Index into OPERATING_STATES. */
   state: number;
-  /** Pitch target per blade, rad; NaN leaves the blade where its last demand put it. */
-  readonly pitchTarget: Float64Array;
-  /** Pitch rate limit per blade, rad/s; Infinity leaves the drive's own. */
-  readonly pitchRate: Float64Array;
-  /** Upper limit on generator torque, N m; Infinity leaves the control law's torque. */
-  torqueLimit: number;
+  /** Pitch demand per blade, rad; NaN leaves the blade where its last demand put it. */
+  readonly pitch: Float64Array;
+  /** Fraction (0..1) of the control law's last torque demand that is still allowed. */
+  torqueFraction: number;
   brake: boolean;
 }
 
-/** Moves the machine between its states and hands set-points over. */
+/** What an operator or the scenario may ask of the supervisor. */
+export type Request = 'start' | 'normal stop';
+
+/** Moves the machine between its states and hands set-points over. The control law runs in power production only. */
 export interface Supervisor {
   readonly sampleTime: number;
   readonly memory: readonly string[];
-  start(state: OperatingState, memory: Float64Array): void;
+  start(state: OperatingState, point: OperatingPoint, brakeApplied: boolean, memory: Float64Array): void;
+  /** Takes note of a request; it is acted on at the next step. */
+  request(request: Request, memory: Float64Array): void;
   /** Reads `measured`, writes its state and set-points back into it, and `orders` where it drives the machine itself. */
   step(t: number, measured: Measured, memory: Float64Array, orders: Orders): void;
 }
@@ -175,6 +180,10 @@ export interface Protection {
   step(t: number, signals: Readonly<ProtectionSignals>, memory: Float64Array, orders: Orders): void;
   /** Index of the guard that is latched first, -1 for none. */
   firstGuard(memory: Float64Array): number;
-  /** Name of the stop sequence in progress, undefined for none. */
-  activeStop(memory: Float64Array): string | undefined;
+  /** The reading that latched the first guard, in words, e.g. "13.46 rpm above 13.44 rpm". */
+  firstReading(memory: Float64Array): string;
+  /** Names of the stop sequences. */
+  readonly stops: readonly string[];
+  /** Index of the stop sequence in progress, -1 for none. */
+  activeStop(memory: Float64Array): number;
 }

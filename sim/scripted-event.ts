@@ -19,3 +19,25 @@ export interface ScriptedEvent {
   trigger: Trigger;
   action: Action;
 }
+
+/** The action in words. */
+export function describeAction(action: Action): string {
+  switch (action.kind) {
+    case 'grid loss':
+      return 'grid is lost';
+    case 'grid return':
+      return 'grid returns';
+    case 'manual stop':
+      return 'stop button is pressed';
+    case 'normal stop':
+      return 'normal stop is requested';
+    case 'start':
+      return 'start is requested';
+    case 'pitch stuck':
+      return `pitch drive sticks: blade ${action.blades.map((b) => b + 1).join(', ')}`;
+    case 'speed sensor frozen':
+      return `${action.sensor} speed sensor freezes`;
+    case 'brake absent':
+      return 'brake is out of action';
+  }
+}
