@@ -187,3 +187,8 @@ export interface Protection {
   /** Index of the stop sequence in progress, -1 for none. */
   activeStop(memory: Float64Array): number;
 }
+
+/** `value` held between `low` and `high`; NaN stays NaN. */
+export function clamp(value: number, low: number, high: number): number {
+  return value < low ? low : Math.min(value, high);
+}

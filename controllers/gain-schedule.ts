@@ -7,3 +7,35 @@ export type GainScheduleSettings =
   | { kind: 'quadratic'; linearPitch: number; quadraticPitch: number }
   /** Linear between points, held beyond the ends. */
   | { kind: 'table'; pitch: readonly number[]; factor: readonly number[] };
+
+/** Returns the factor on the gains at a pitch angle (rad). */
+export function gainSchedule(settings: GainScheduleSettings): (pitch: number) => number {
+  switch (settings.kind) {
+    case 'constant':
+      return () => 1;
+    case 'reciprocal': {
+      const { halvingPitch } = settings;
+      return (pitch) => 1 / (1 + Math.max(pitch, 0) / halvingPitch);
+    }
+    case 'quadratic': {
+      const { linearPitch, quadraticPitch } = settings;
+      return (pitch) => {
+        const angle = Math.max(pitch, 0);
+        return 1 / (1 + angle / linearPitch + (angle / quadraticPitch) ** 2);
+      };
+    }
+    case 'table':
+      return tableFactor(settings.pitch, settings.factor);
+  }
+}
+
+function tableFactor(pitch: readonly number[], factor: readonly number[]): (pitch: number) => number {
+  const last = pitch.length - 1;
+  return (angle) => {
+    if (angle <= pitch[0]) return factor[0];
+    if (angle >= pitch[last]) return factor[last];
+    let i = 1;
+    while (pitch[i] < angle) i++;
+    return factor[i - 1] + ((factor[i] - factor[i - 1]) * (angle - pitch[i - 1])) / (pitch[i] - pitch[i - 1]);
+  };
+}

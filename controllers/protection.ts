@@ -1,4 +1,6 @@
-import type { StopSequence } from './stop-sequence.ts';
+import { OPERATING_STATES, type OperatingState, type Protection, type ProtectionSignals } from './contract.ts';
+import { guard } from './guards/index.ts';
+import { type StopSequence, stopSequenceMemory, stopSequenceRunner } from './stop-sequence.ts';
 
 /** What a guard watches; speeds in rad/s, angles in rad. */
 export type GuardWatch =
@@ -25,4 +27,99 @@ export interface ProtectionSettings {
   /** In order of precedence: a later guard may replace an earlier guard's stop only if it stands before it in this list. */
   guards: readonly GuardSettings[];
   stops: Readonly<Record<string, StopSequence>>;
+}
+
+/** Fixed slots; then per guard since when it speaks (NaN: silent) and whether it is latched; then the stop's own. */
+const FIXED = ['first guard', 'first reading', 'active stop', 'guard of the active stop'] as const;
+const [FIRST, READING, STOP, STOP_GUARD] = FIXED.keys();
+
+const PARKED = OPERATING_STATES.indexOf('parked');
+
+/** The state that a stop sequence shows, by its name: `normal` and `manual` their own, any other an emergency stop. */
+function stateOfStop(name: string): number {
+  const state: OperatingState =
+    name === 'normal' ? 'normal stop' : name === 'manual' ? 'manual stop' : 'emergency stop';
+  return OPERATING_STATES.indexOf(state);
+}
+
+/**
+ * The safety chain: watches its own signals, latches, and carries out the stop that its gravest latched guard asks
+ * for. Guards stand in the file with the gravest first: while a stop is under way, only a guard that stands before
+ * the one that began it can put another sequence in its place.
+ */
+export function safetyChain(settings: ProtectionSettings, bladeCount: number): Protection {
+  const guards = settings.guards.map((g) => ({ ...g, ...guard(g) }));
+  const stops = Object.keys(settings.stops);
+  const sequences = stops.map((name) => settings.stops[name]);
+  const states = stops.map(stateOfStop);
+  const stopOf = guards.map((g) => stops.indexOf(g.stop));
+  const runner = stopSequenceRunner(bladeCount, settings.sampleTime);
+  const speaksAt = FIXED.length;
+  const latchedAt = speaksAt + guards.length;
+  const runAt = latchedAt + guards.length;
+
+  /** Whether guard `i` latches at this sample. */
+  function latches(i: number, t: number, signals: Readonly<ProtectionSignals>, memory: Float64Array): boolean {
+    if (memory[latchedAt + i] === 1) return false;
+    if (guards[i].reading(signals) <= guards[i].threshold) {
+      memory[speaksAt + i] = Number.NaN;
+      return false;
+    }
+    if (Number.isNaN(memory[speaksAt + i])) memory[speaksAt + i] = t;
+    // Half a sample of slack: sample times are not exact in binary.
+    if (t - memory[speaksAt + i] < guards[i].hold - 0.5 * settings.sampleTime) return false;
+    memory[latchedAt + i] = 1;
+    return true;
+  }
+
+  function takeNote(i: number, t: number, signals: Readonly<ProtectionSignals>, memory: Float64Array): void {
+    if (memory[FIRST] < 0) {
+      memory[FIRST] = i;
+      memory[READING] = guards[i].reading(signals);
+    }
+    const running = memory[STOP];
+    if (running === stopOf[i] || (running >= 0 && memory[STOP_GUARD] < i)) return;
+    memory[STOP] = stopOf[i];
+    memory[STOP_GUARD] = i;
+    runner.begin(t, signals.pitch, memory, runAt);
+  }
+
+  /** Once parked, guards that reset by themselves let go when their condition has gone. */
+  function resetIfAllowed(signals: Readonly<ProtectionSignals>, memory: Float64Array): void {
+    for (let i = 0; i < guards.length; i++) {
+      if (memory[latchedAt + i] !== 1) continue;
+      if (guards[i].reset === 'manual' || guards[i].reading(signals) > guards[i].threshold) return;
+    }
+    memory.fill(0, latchedAt, latchedAt + guards.length);
+    memory[FIRST] = memory[STOP] = memory[STOP_GUARD] = -1;
+  }
+
+  return {
+    sampleTime: settings.sampleTime,
+    memory: [
+      ...FIXED,
+      ...guards.map((g) => `${g.name} speaks since`),
+      ...guards.map((g) => `${g.name} latched`),
+      ...stopSequenceMemory(bladeCount),
+    ],
+    guards: guards.map((g) => g.name),
+    stops,
+    start(memory) {
+      memory[FIRST] = memory[STOP] = memory[STOP_GUARD] = -1;
+      memory.fill(Number.NaN, speaksAt, latchedAt);
+    },
+    step(t, signals, memory, orders) {
+      for (let i = 0; i < guards.length; i++) {
+        if (latches(i, t, signals, memory)) takeNote(i, t, signals, memory);
+      }
+      if (memory[STOP] < 0) return;
+      runner.step(sequences[memory[STOP]], t, signals, memory, runAt, orders);
+      const parked = runner.parked(memory, runAt);
+      orders.state = parked ? PARKED : states[memory[STOP]];
+      if (parked) resetIfAllowed(signals, memory);
+    },
+    firstGuard: (memory) => memory[FIRST],
+    firstReading: (memory) => (memory[FIRST] < 0 ? '' : guards[memory[FIRST]].describe(memory[READING])),
+    activeStop: (memory) => memory[STOP],
+  };
 }

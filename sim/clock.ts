@@ -170,7 +170,7 @@ export class Clock {
     this.slope = new Float64Array(states);
 
     const derivative = (t: number, x: ArrayLike<number>, dx: { [i: number]: number }) =>
-      plant.derivative(t < this.windCeiling ? t : this.windCeiling, x, this.memory, dx);
+      plant.derivative(Math.min(t, this.windCeiling), x, this.memory, dx);
     this.integrator =
       setup.integrator.kind === 'odex'
         ? odex(derivative, plant.scales(), setup.integrator.relativeTolerance)
@@ -588,21 +588,25 @@ export class Clock {
     const { plant, sensors, memory, x } = this;
     switch (action.kind) {
       case 'grid loss':
-        return plant.generator.setGrid(false, memory);
       case 'grid return':
-        return plant.generator.setGrid(true, memory);
+        plant.generator.setGrid(action.kind === 'grid return', memory);
+        break;
       case 'manual stop':
-        return sensors.pressButton(memory);
+        sensors.pressButton(memory);
+        break;
       case 'normal stop':
       case 'start':
-        return this.setup.supervisor.request(action.kind, this.supervisorMemory);
+        this.setup.supervisor.request(action.kind, this.supervisorMemory);
+        break;
       case 'pitch stuck':
         for (const b of action.blades) plant.pitch.stick(b, x, memory);
-        return;
+        break;
       case 'speed sensor frozen':
-        return (action.sensor === 'control' ? sensors.controlSpeed : sensors.protectionSpeed).freeze(memory);
+        (action.sensor === 'control' ? sensors.controlSpeed : sensors.protectionSpeed).freeze(memory);
+        break;
       case 'brake absent':
-        return plant.brake.remove(memory);
+        plant.brake.remove(memory);
+        break;
     }
   }
 }

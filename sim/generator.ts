@@ -1,4 +1,4 @@
-import { clamp } from './clamp.ts';
+import { clamp } from '../controllers/contract.ts';
 import type { Layout } from './layout.ts';
 import type { GeneratorData } from './turbine.ts';
 

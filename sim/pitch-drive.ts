@@ -1,4 +1,4 @@
-import { clamp } from './clamp.ts';
+import { clamp } from '../controllers/contract.ts';
 import { type Layout, perBlade } from './layout.ts';
 import type { PitchDriveData } from './turbine.ts';
 

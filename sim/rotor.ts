@@ -30,4 +30,9 @@ export interface Rotor {
     pitchAt: ArrayLike<number>,
     out: RotorLoads,
   ): void;
+  /**
+   * Loads on which the rotor settles in uniform wind: what trim and initial states are found from.
+   * @param windSpeed m/s, `rotorSpeed` rad/s, collective `pitch` rad
+   */
+  steadyLoads(windSpeed: number, rotorSpeed: number, pitch: number, out: RotorLoads): void;
 }

@@ -1,0 +1,10 @@
+import { type Guard, speedReading } from './guard.ts';
+
+/** @param above generator speed, rad/s */
+export function generatorOverspeed(above: number): Guard {
+  return {
+    threshold: above,
+    reading: (signals) => signals.generatorSpeed,
+    describe: (reading) => speedReading(reading, above),
+  };
+}

@@ -1,0 +1,10 @@
+import { type Guard, speedReading } from './guard.ts';
+
+/** @param above rotor speed, rad/s */
+export function rotorOverspeed(above: number): Guard {
+  return {
+    threshold: above,
+    reading: (signals) => signals.rotorSpeed,
+    describe: (reading) => speedReading(reading, above),
+  };
+}
