@@ -1,0 +1,155 @@
+/** The scenario file. */
+import { z } from 'zod';
+import type { Machine } from '../../controllers/contract.ts';
+import type { LimitData, ScenarioData, StartData } from '../scenario.ts';
+import { event, type WrittenEvent } from './event.ts';
+import { camelKeys, choice, count, mapping, number, quantity, tag, text } from './field.ts';
+import { preamble } from './file-kind.ts';
+import { channelName, limit } from './limit.ts';
+import { type WindPart, wind } from './wind.ts';
+
+/** Another file, with values of it overridden where it is used. `load.ts` follows it. */
+function reference(description: string) {
+  return z
+    .union([
+      z.string().min(1),
+      mapping({
+        file: text('Path of the file, relative to this one.'),
+        set: z
+          .record(z.string(), z.unknown())
+          .meta({
+            description:
+              'Values to override, by path: keys, list indices from 0 or names of list items, joined by dots.',
+          })
+          .optional(),
+      }),
+    ])
+    .meta({ description: `${description}: a path relative to this file, or a mapping of file and set.` });
+}
+
+const start = z
+  .discriminatedUnion('kind', [
+    mapping({
+      kind: tag('trim', 'trim', 'Steady at a wind speed.'),
+      wind: quantity('speed', 'That wind speed', { above: 0, atMost: 100 }),
+    }),
+    mapping({
+      kind: tag('parked', 'parked', 'Standing still with feathered blades.'),
+      brake: choice({ applied: 'applied', released: 'released' }, 'The shaft brake.'),
+    }),
+  ])
+  .transform((s): StartData => (s.kind === 'trim' ? s : { kind: s.kind, brake: s.brake === 'applied' }))
+  .meta({ description: 'The state at the start.' });
+
+const record = mapping({
+  rate: quantity('frequency', 'Recorded frames per second', { above: 0 }).prefault('20 Hz'),
+  channels: z
+    .array(channelName('A channel.'))
+    .min(1)
+    .meta({ description: 'Channels to record; all when absent.' })
+    .optional(),
+})
+  .prefault({})
+  .meta({ description: 'What is written to the results.' });
+
+const expected = mapping({
+  verdict: z.enum(['holds', 'broken']).meta({ description: 'What the author expects of the limits.' }),
+  because: text('Why, where they are expected to break.').optional(),
+})
+  .superRefine(({ verdict, because }, context) => {
+    if (verdict !== 'broken' || because !== undefined) return;
+    context.addIssue({
+      code: 'custom',
+      path: ['because'],
+      message: 'an expected failure needs a reason: add "because"',
+    });
+  })
+  .prefault({ verdict: 'holds' })
+  .meta({ description: 'What the author expects.' });
+
+const integrator = z
+  .discriminatedUnion('kind', [
+    mapping({
+      kind: tag('odex', 'odex', 'Extrapolation with error control.'),
+      relative_tolerance: number('Relative tolerance', { above: 0, below: 0.1 }).prefault(1e-6),
+    }).transform(camelKeys),
+    mapping({
+      kind: tag('runge_kutta', 'runge-kutta', 'Classical Runge–Kutta of order 4 with fixed steps.'),
+      step: quantity('time', 'Step', { above: 0 }),
+    }),
+  ])
+  .prefault({ kind: 'odex' })
+  .meta({ description: 'How the plant is integrated.' });
+
+/** A scenario without the files it refers to. */
+export type ScenarioFileData = Pick<
+  ScenarioData,
+  'title' | 'story' | 'start' | 'duration' | 'record' | 'expected' | 'seed' | 'integrator'
+> & { wind: readonly WindPart[]; events: readonly WrittenEvent[]; limits: readonly LimitData[] };
+
+interface Timed {
+  duration: number;
+  wind: readonly WindPart[];
+  events: readonly WrittenEvent[];
+  limits: readonly LimitData[];
+}
+
+/** What falls outside the run. */
+function faultsOfTime({ duration, wind, events, limits }: Timed): { path: (string | number)[]; message: string }[] {
+  const late = `after the end of the run (${duration} s)`;
+  return [
+    ...wind.flatMap(({ lasts = duration }, i) =>
+      lasts < duration
+        ? [{ path: ['wind', i], message: `this wind ends at ${lasts} s, before the run does (${duration} s)` }]
+        : [],
+    ),
+    ...events.flatMap(({ trigger }, i) =>
+      trigger.kind === 'time' && trigger.at > duration
+        ? [{ path: ['events', i, 'at'], message: `this event falls ${late}` }]
+        : [],
+    ),
+    ...limits.flatMap(({ from }, i) =>
+      from >= duration ? [{ path: ['limits', i, 'from'], message: `this window starts at or ${late}` }] : [],
+    ),
+  ];
+}
+
+/** The schema of a scenario for a machine (`UNKNOWN_MACHINE` where it is not known). */
+export function scenarioFile(machine: Machine) {
+  return mapping({
+    ...preamble('scenario'),
+    title: text('One line for tables and pictures.'),
+    story: text('What happens and why it matters.').optional(),
+    turbine: reference('The turbine'),
+    controller: reference('The controller'),
+    protection: reference('The protection'),
+    wind,
+    start,
+    duration: quantity('time', 'How long the run lasts', { above: 0 }),
+    events: z.array(event(machine)).prefault([]).meta({ description: 'What happens to the machine.' }),
+    record,
+    limits: z.array(limit(machine)).prefault([]).meta({ description: 'What makes the scenario pass or fail.' }),
+    expect: expected,
+    seed: count('Seed of every random number', 0).prefault(1),
+    integrator,
+  })
+    .superRefine((file, context) => {
+      for (const { path, message } of faultsOfTime(file)) context.addIssue({ code: 'custom', path, message });
+    })
+    .transform(
+      ({ title, story = '', expect, ...file }): ScenarioFileData => ({
+        title,
+        story,
+        wind: file.wind,
+        start: file.start,
+        duration: file.duration,
+        events: file.events,
+        record: file.record,
+        limits: file.limits.map((l) => ({ ...l, to: Math.min(l.to, file.duration) })),
+        expected: expect,
+        seed: file.seed,
+        integrator: file.integrator,
+      }),
+    )
+    .meta({ title: 'galehold scenario', description: 'A turbine, its controls, a wind, and what happens.' });
+}
