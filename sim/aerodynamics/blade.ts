@@ -1,6 +1,6 @@
 import type { AirfoilData, BladeData, RotorData } from '../turbine.ts';
 import { type Airfoil, airfoilOf, blend, coefficientsAt } from './airfoil.ts';
-import { type MonotoneCubic, monotoneCubic, valueAt } from './monotone-cubic.ts';
+import { type CubicCurve, monotoneCurve, valueAt } from './cubic-curve.ts';
 
 /** A strip of one blade. */
 export interface BladeSection {
@@ -20,8 +20,8 @@ export interface Blade {
   readonly radius: number;
   readonly hubRadius: number;
   /** Chord (m) and twist (rad) against radius (m). */
-  readonly chord: MonotoneCubic;
-  readonly twist: MonotoneCubic;
+  readonly chord: CubicCurve;
+  readonly twist: CubicCurve;
   /** Airfoils by radius, rising; sections between two blend linearly. */
   readonly airfoils: readonly { radius: number; airfoil: Airfoil }[];
   /** Strips from hub to tip that tile the span. */
@@ -67,11 +67,11 @@ function givenShape(blade: Extract<BladeData, { kind: 'stations' }>, airfoils: r
   const known = airfoilsByName(airfoils);
   const radius = blade.stations.map((s) => s.radius);
   return {
-    chord: monotoneCubic(
+    chord: monotoneCurve(
       radius,
       blade.stations.map((s) => s.chord),
     ),
-    twist: monotoneCubic(
+    twist: monotoneCurve(
       radius,
       blade.stations.map((s) => s.twist),
     ),
@@ -114,11 +114,12 @@ function optimumShape(
   };
 
   const span = rotor.radius - rotor.hubRadius;
-  const radius = Array.from(
-    { length: blade.stations },
-    (_, i) => rotor.hubRadius + (span * i) / (blade.stations - 1),
-  );
-  return { chord: monotoneCubic(radius, radius.map(chordAt)), twist: monotoneCubic(radius, radius.map(twistAt)), airfoils };
+  const radius = Array.from({ length: blade.stations }, (_, i) => rotor.hubRadius + (span * i) / (blade.stations - 1));
+  return {
+    chord: monotoneCurve(radius, radius.map(chordAt)),
+    twist: monotoneCurve(radius, radius.map(twistAt)),
+    airfoils,
+  };
 }
 
 const smoothStep = (x: number): number => x * x * (3 - 2 * x);
@@ -140,7 +141,8 @@ function airfoilsByName(airfoils: readonly AirfoilData[]): (name: string) => Air
   const known = new Map(airfoils.map((data) => [data.name, airfoilOf(data)]));
   return (name) => {
     const found = known.get(name);
-    if (!found) throw new Error(`the blade names the airfoil '${name}', but the turbine has: ${[...known.keys()].join(', ')}`);
+    if (!found)
+      throw new Error(`the blade names the airfoil '${name}', but the turbine has: ${[...known.keys()].join(', ')}`);
     return found;
   };
 }

@@ -9,9 +9,9 @@
  * does (drag only takes energy out, so it never vanishes), hence there is a solution for every wind and speed of either
  * sign.
  *
- * Thrust law of an annulus, C_T(a): momentum 4Fa(1−a) up to a = 0.4; Buhl (NREL/TP-500-36834, 2005) above; the
- * propeller-brake momentum law 4Fa(a−1) where that is larger still. So the law runs on into still air, where the rotor
- * is a fan. Wind from behind mirrors it.
+ * Thrust law of an annulus, C_T(a): momentum 4Fa(1−a) up to a = 0.4; from there to a = 1 Buhl (NREL/TP-500-36834,
+ * 2005); beyond, where the rotor blows against the wind, a parabola of our own that leaves Buhl's with the same value and
+ * slope and tends to the fan in still air, 4Fa². Wind from behind mirrors the law.
  *
  * Swirl is carried by the mass flow that the thrust law implies: V(1−a) where momentum theory holds, as usual, and more
  * above a = 0.4, where the usual V(1−a) would vanish while the wake still takes thrust.
@@ -140,14 +140,15 @@ function axialStream(load: number, sin: number, lossFactor: number): number {
   const full = 4 * lossFactor * sin * sin;
   // Momentum: N = 4F(V − s)s, up to a = 0.4.
   if (load >= -full && load <= (2 / 3) * full) return load === 0 ? sin : sin + load / (4 * lossFactor * sin);
+  // Buhl, with a = 1 − s/V: N = 2V² − (20/3 − 4F)Vs + (50/9 − 4F)s².
   const linear = (20 / 3 - 4 * lossFactor) * sin;
-  const discriminant = 16 * lossFactor * (lossFactor - 4 / 3) * sin * sin + 8 * Math.abs(load);
-  // Buhl: N = 8/9 V² + (4F − 40/9)V(V − s) + (50/9 − 4F)(V − s)².
-  if (load > 0) return (linear + Math.sqrt(discriminant)) / 4;
-  // The load drives air against a stream from behind: the larger of Buhl and the propeller brake N = 4F(V + s)s.
-  const buhl = (Math.sqrt(discriminant) - linear) / 4;
-  const brake = -load / (4 * lossFactor * sin) - sin;
-  return -Math.max(0, Math.min(buhl, brake));
+  if (load > 0) {
+    const buhl = 8 * load + 16 * lossFactor * (lossFactor - 4 / 3) * sin * sin;
+    return (linear + Math.sqrt(buhl)) / 4;
+  }
+  // Blowing against a wind V from behind, a = 1 + s/V: −N = 2V² + (20/3 − 4F)Vs + 4Fs².
+  const beyond = linear * linear - 8 * (load + full);
+  return (linear - Math.sqrt(beyond)) / 4;
 }
 
 /** One section's balance while φ is sought; described anew for each section, so that nothing is allocated. */
@@ -241,7 +242,14 @@ class SectionBalance {
   }
 
   /** Chandrupatla, Advances in Engineering Software 28, 1997: inverse quadratic steps where they are safe, else halving. */
-  private closeIn(near: number, nearMiss: number, far: number, farMiss: number, wind: number, edgeSpeed: number): number {
+  private closeIn(
+    near: number,
+    nearMiss: number,
+    far: number,
+    farMiss: number,
+    wind: number,
+    edgeSpeed: number,
+  ): number {
     let a = far;
     let fa = farMiss;
     let b = near;
@@ -268,9 +276,7 @@ class SectionBalance {
       const xi = (a - b) / (c - b);
       const shape = (fa - fb) / (fc - fb);
       const safe = shape * shape < xi && (1 - shape) * (1 - shape) < 1 - xi;
-      t = safe
-        ? (fa / (fb - fa)) * (fc / (fb - fc)) + ((c - a) / (b - a)) * (fa / (fc - fa)) * (fb / (fc - fb))
-        : 0.5;
+      t = safe ? (fa / (fb - fa)) * (fc / (fb - fc)) + ((c - a) / (b - a)) * (fa / (fc - fa)) * (fb / (fc - fb)) : 0.5;
       const least = ANGLE_TOLERANCE / (2 * width);
       t = Math.max(least, Math.min(1 - least, t));
     }

@@ -1,5 +1,5 @@
 import type { AirfoilData } from '../turbine.ts';
-import { monotoneCubic, valueAt } from './monotone-cubic.ts';
+import { monotoneCurve, valueAt } from './cubic-curve.ts';
 
 /** Lift and drag coefficient against angle of attack (rad, −π to π): a smooth description to be sampled. */
 export interface Polar {
@@ -133,8 +133,8 @@ export function tablePolar(data: TableData): Polar {
       d.unshift(point.drag);
     });
   }
-  const liftCurve = monotoneCubic(x, l);
-  const dragCurve = monotoneCubic(x, d);
+  const liftCurve = monotoneCurve(x, l);
+  const dragCurve = monotoneCurve(x, d);
   return { lift: (a) => valueAt(liftCurve, a), drag: (a) => valueAt(dragCurve, a) };
 }
 

@@ -1,17 +1,32 @@
-/** A curve through points: cubic between them, continuous slope, never beyond the points it lies between. */
-export interface MonotoneCubic {
+/** A curve through points: cubic between them, with continuous slope. */
+export interface CubicCurve {
   readonly x: readonly number[];
   readonly y: readonly number[];
   readonly slope: readonly number[];
 }
 
+/** Slope at a point from the secants and widths before and after it. */
+type SlopeRule = (before: number, after: number, widthBefore: number, widthAfter: number) => number;
+
 /**
- * Curve through (x, y) that overshoots nowhere.
+ * Curve through (x, y) that overshoots nowhere: for outlines and polars, which have corners.
  * Source: Fritsch and Butland, SIAM J. Sci. Stat. Comput. 5, 1984 (weighted harmonic mean of neighbouring slopes).
  * @param x rising
  * @throws when there are fewer than two points, the lengths differ or `x` does not rise
  */
-export function monotoneCubic(x: readonly number[], y: readonly number[]): MonotoneCubic {
+export function monotoneCurve(x: readonly number[], y: readonly number[]): CubicCurve {
+  return curve(x, y, harmonicSlope);
+}
+
+/**
+ * Curve through (x, y) whose slope at each point is that of the parabola through it and its neighbours: for smooth
+ * functions, whose peaks the monotone curve would flatten. Arguments and errors as there.
+ */
+export function smoothCurve(x: readonly number[], y: readonly number[]): CubicCurve {
+  return curve(x, y, parabolaSlope);
+}
+
+function curve(x: readonly number[], y: readonly number[], interiorSlope: SlopeRule): CubicCurve {
   if (x.length < 2 || x.length !== y.length) {
     throw new Error(`a curve needs two or more points and as many values: got ${x.length} and ${y.length}`);
   }
@@ -29,7 +44,11 @@ export function monotoneCubic(x: readonly number[], y: readonly number[]): Monot
   return { x, y, slope };
 }
 
-function interiorSlope(before: number, after: number, widthBefore: number, widthAfter: number): number {
+function parabolaSlope(before: number, after: number, widthBefore: number, widthAfter: number): number {
+  return (widthAfter * before + widthBefore * after) / (widthBefore + widthAfter);
+}
+
+function harmonicSlope(before: number, after: number, widthBefore: number, widthAfter: number): number {
   if (before * after <= 0) return 0;
   const weightBefore = 2 * widthAfter + widthBefore;
   const weightAfter = widthAfter + 2 * widthBefore;
@@ -37,7 +56,7 @@ function interiorSlope(before: number, after: number, widthBefore: number, width
 }
 
 /** Value of the curve at `at`; beyond its ends, the end's value. */
-export function valueAt(curve: MonotoneCubic, at: number): number {
+export function valueAt(curve: CubicCurve, at: number): number {
   const { x, y, slope } = curve;
   const last = x.length - 1;
   if (at <= x[0]) return y[0];
@@ -51,5 +70,7 @@ export function valueAt(curve: MonotoneCubic, at: number): number {
   const width = x[i + 1] - x[i];
   const t = (at - x[i]) / width;
   const u = 1 - t;
-  return u * u * ((1 + 2 * t) * y[i] + t * width * slope[i]) + t * t * ((1 + 2 * u) * y[i + 1] - u * width * slope[i + 1]);
+  return (
+    u * u * ((1 + 2 * t) * y[i] + t * width * slope[i]) + t * t * ((1 + 2 * u) * y[i + 1] - u * width * slope[i + 1])
+  );
 }
