@@ -65,6 +65,8 @@ describe('the extreme operating gust of IEC 61400-1 edition 3 (class I, turbulen
   it('grows with hub height up to 60 m, since Λ₁ does', () => {
     // Λ₁ = 0.7 · 30 = 21 m: 12.8568/(1 + 0.1 · 42/21) = 12.8568/1.2 = 10.714 m/s
     expect(operatingGustSize({ ...GUST, hubHeight: 30 }).gust).toBeCloseTo(10.714, 6);
+    // Λ₁ = 0.7 · 55 = 38.5 m: 12.8568/(1 + 4.2/38.5) = 12.8568/1.109091 = 11.592 m/s
+    expect(operatingGustSize({ ...GUST, hubHeight: 55 }).gust).toBeCloseTo(11.592, 3);
     expect(operatingGustSize({ ...GUST, hubHeight: 60 }).gust).toBeCloseTo(11.688, 6);
   });
 });

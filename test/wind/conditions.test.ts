@@ -104,7 +104,8 @@ describe('a table', () => {
   const wind = tableWind({ time: [0, 10, 20, 50], speed: [8, 12, 11, 11] });
 
   it('is linear between rows and held at its ends', () => {
-    expect([-1, 0, 5, 10, 12.5, 20, 49, 50, 900].map(wind.rotorMean)).toEqual([8, 8, 10, 12, 11.75, 11, 11, 11, 11]);
+    expect([-1, 0, 5, 9.5, 10, 10.5, 12.5].map(wind.rotorMean)).toEqual([8, 8, 10, 11.8, 12, 11.95, 11.75]);
+    expect([20, 20.5, 49, 50, 900].map(wind.rotorMean)).toEqual([11, 11, 11, 11, 11]);
   });
 
   it('cuts the integration at every row inside the run', () => {
