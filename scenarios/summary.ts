@@ -16,11 +16,12 @@ export interface LimitResult {
   relation: 'below' | 'above';
   /** In `unit`. */
   bound: number;
-  value: number;
+  /** null where there is nothing to judge (a stop that never came, a window outside the run): such a limit is broken. */
+  value: number | null;
   unit: string;
   holds: boolean;
-  /** Distance to the bound in `unit`, positive when the limit holds. */
-  margin: number;
+  /** Distance to the bound in `unit`, positive when the limit holds, null where `value` is. */
+  margin: number | null;
 }
 
 export interface Metric {
