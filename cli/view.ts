@@ -1,0 +1,46 @@
+import { resolve } from 'node:path';
+import type { Command } from 'commander';
+
+/** `galehold view`: one HTML file from the results of one or several runs. */
+export function registerView(program: Command): void {
+  program
+    .command('view')
+    .summary('put run results into one HTML page')
+    .description(
+      'Make one HTML page from the results of one or several runs. The page opens from disk, needs no network,\n' +
+        'and lets several runs be laid over each other.',
+    )
+    .argument('<results-folder...>', 'folders that "galehold run" has written, one a run')
+    .option('--out <file>', 'the page to write', 'view.html')
+    .option('--title <text>', "the page's heading (default: the scenario's title)")
+    .addHelpText('after', '\nExample:\n  galehold view results/grid-loss-at-crest results/steady-12 --out view.html')
+    .action(async (folders: string[], options: { out: string; title?: string }) => {
+      const [{ readStoredResult }, { InputError }, { assemblePage }, { readPageTemplate }, { writeWholeFile }] =
+        await Promise.all([
+          import('../scenarios/stored-result.ts'),
+          import('../scenarios/input-error.ts'),
+          import('../scenarios/page.ts'),
+          import('./page-template.ts'),
+          import('./whole-file.ts'),
+        ]);
+      const runs = await Promise.all(folders.map(readStoredResult));
+      for (const run of runs) for (const sentence of run.missing ?? []) console.error(`${run.name}: ${sentence}`);
+
+      const title = options.title ?? titleOf(runs.map((run) => run.summary.scenario.title));
+      const page = assemblePage(await readPageTemplate(), { title, runs });
+      try {
+        await writeWholeFile(options.out, page);
+      } catch (cause) {
+        const message = `cannot be written (${(cause as Error).message})`;
+        throw new InputError([{ file: options.out, line: 0, column: 0, message }]);
+      }
+      console.log(`${resolve(options.out)}  (${(page.length / 1e6).toFixed(1)} MB, opens in any browser)`);
+    });
+}
+
+function titleOf(titles: readonly string[]): string {
+  const distinct = [...new Set(titles)];
+  if (distinct.length === 1 && titles.length === 1) return distinct[0] ?? '';
+  if (distinct.length === 1) return `${distinct[0]}: ${titles.length} runs`;
+  return `${titles.length} runs side by side`;
+}
