@@ -274,8 +274,9 @@ export class Clock {
     this.control(t);
     this.actuate(t);
     this.announce(t);
-    this.emitFrame(t);
+    this.fillFrame(t);
     this.fireCrossings(t, this.frame.values);
+    this.frameStream.next(this.frame);
     if (this.tick < this.lastTick) this.integrate(t, this.timeOf(this.tick + 1));
     this.tick++;
   }
@@ -420,12 +421,11 @@ export class Clock {
     this.eventStream.next({ time, kind, text });
   }
 
-  private emitFrame(t: number): void {
+  private fillFrame(t: number): void {
     const { frame, status } = this;
     frame.tick = this.tick;
     frame.time = t;
     this.fill(t, this.x, this.memory, this.memory[this.own + 6], status, frame.values);
-    this.frameStream.next(frame);
   }
 
   private integrate(from: number, to: number): void {
@@ -517,10 +517,7 @@ export class Clock {
   private failure(t: number, cause: unknown): SimulationError {
     if (cause instanceof SimulationError) return cause;
     const message = cause instanceof Error ? cause.message : String(cause);
-    const plain = message.includes('maximum allowed steps')
-      ? 'the integrator takes endless small steps: the model is stiff there (a very short time constant or a very stiff shaft)'
-      : message;
-    return new SimulationError(t, plain, this.state().slice(0, this.x.length));
+    return new SimulationError(t, message, this.state().slice(0, this.x.length));
   }
 
   /** The instant in (from, to] at which `margin` turns negative; leaves the state there. */

@@ -1,29 +1,28 @@
 /**
- * The place in [from, to] where `f` changes its sign from ≥ 0 to < 0, by the Illinois variant of regula falsi
- * (Dowell and Jarratt 1971), to within `tolerance`. Returns the far end of the last bracket, where `f` < 0.
+ * The place in [from, to] where `f` changes its sign from ≥ 0 to < 0, to within `tolerance`: secant steps, with a
+ * bisection whenever a step has not halved the bracket. Returns the far end of the last bracket, where `f` < 0.
  */
 export function findRoot(f: (t: number) => number, from: number, to: number, tolerance: number): number {
   let near = from;
   let far = to;
   let nearValue = f(near);
   let farValue = f(far);
-  let lastSide = 0;
+  let bisect = false;
   while (far - near > tolerance) {
-    const secant = (near * farValue - far * nearValue) / (farValue - nearValue);
-    const inside = secant > near && secant < far ? secant : 0.5 * (near + far);
-    const t = Math.min(Math.max(inside, near + 0.25 * tolerance), far - 0.25 * tolerance);
+    const width = far - near;
+    const secant = near + (width * nearValue) / (nearValue - farValue);
+    const usable = !bisect && secant > near && secant < far;
+    // Half a tolerance past the secant, so that a good guess closes the bracket from its far side.
+    const t = usable ? Math.min(secant + 0.5 * tolerance, far - 0.5 * tolerance) : near + 0.5 * width;
     const value = f(t);
     if (value < 0) {
       far = t;
       farValue = value;
-      if (lastSide < 0) nearValue /= 2;
-      lastSide = -1;
     } else {
       near = t;
       nearValue = value;
-      if (lastSide > 0) farValue /= 2;
-      lastSide = 1;
     }
+    bisect = far - near > 0.5 * width;
   }
   return far;
 }

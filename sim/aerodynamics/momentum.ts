@@ -128,10 +128,13 @@ const SWIRL_BOUND = 0.5;
 const FIRST_STEP = 0.03;
 const ANGLE_TOLERANCE = 1e-11;
 
+/** Prandtl's factor is one to ten digits from here on. */
+const NO_LOSS_EXPONENT = 22;
+
 /** Prandtl: F = 2/π · acos(exp(−B/2 · gap / (reference · |sin φ|))). */
 function prandtl(bladeCount: number, gap: number, reference: number, sin: number): number {
   const exponent = (0.5 * bladeCount * gap) / (reference * Math.abs(sin));
-  return exponent < 36 ? (2 / Math.PI) * Math.acos(Math.exp(-exponent)) : 1;
+  return exponent < NO_LOSS_EXPONENT ? (2 / Math.PI) * Math.acos(Math.exp(-exponent)) : 1;
 }
 
 /** The free stream along the axis, per unit of relative speed, for a load N = σC_n at s = sin φ. */

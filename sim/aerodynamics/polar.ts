@@ -102,14 +102,14 @@ const FULL_CIRCLE_SLACK = 1e-6;
 export function tablePolar(data: TableData): Polar {
   const { name, angle, lift, drag } = data;
   const last = angle.length - 1;
-  if (angle.length < 4 || lift.length !== angle.length || drag.length !== angle.length) {
-    throw new Error(`airfoil '${name}': a polar needs four or more angles, and a lift and a drag for each`);
+  if (angle.length < 3 || lift.length !== angle.length || drag.length !== angle.length) {
+    throw new Error(`airfoil '${name}': a polar needs three or more angles, and a lift and a drag for each`);
   }
   if (!(angle[0] < 0 && angle[last] > 0)) {
     throw new Error(`airfoil '${name}': the polar's angles must run from below zero to above zero`);
   }
-  const unfit = drag.findIndex((d) => !(d > 0));
-  if (unfit >= 0) throw new Error(`airfoil '${name}': drag must be above zero at every angle, not ${drag[unfit]}`);
+  const unfit = drag.findIndex((d) => !(d >= 0));
+  if (unfit >= 0) throw new Error(`airfoil '${name}': drag must not be negative, but is ${drag[unfit]}`);
 
   const x = [...angle];
   const l = [...lift];
