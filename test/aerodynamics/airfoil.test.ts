@@ -122,7 +122,7 @@ describe('an airfoil by table', () => {
       { angle: [-10, -5, 0, 5, 10, 100].map((d) => d * DEGREE) },
       /stop short of 90°.*not stop at 100/,
     ],
-    ['a drag of zero', { drag: [0.02, 0.01, 0, 0.01, 0.018, 0.08] }, /drag must be above zero/],
+    ['a drag below zero', { drag: [0.02, 0.01, -0.01, 0.01, 0.018, 0.08] }, /drag must not be negative, but is -0.01/],
     ['a value short', { lift: [0, 1] }, /a lift and a drag for each/],
     ['an open circle', { angle: [-180, -5, 0, 5, 10, 180].map((d) => d * DEGREE) }, /-180° and 180° differ/],
   ])('refuses %s', (_, change, message) => {
