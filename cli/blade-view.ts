@@ -1,8 +1,9 @@
-import { InputError } from '../scenarios/input-error.ts';
+import { refusal } from '../scenarios/input-error.ts';
 import { parseQuantity, type QuantityKind } from '../scenarios/quantity.ts';
+import { cachedSurface } from '../scenarios/surface-cache.ts';
 import { type Blade, bladeOf } from '../sim/aerodynamics/blade.ts';
 import { type SteadyRotor, steadyRotor } from '../sim/aerodynamics/steady-rotor.ts';
-import { surfaceOf, surfaceRotor } from '../sim/aerodynamics/surface-rotor.ts';
+import { surfaceRotor } from '../sim/aerodynamics/surface-rotor.ts';
 import {
   evenRadii,
   type RotorPoint,
@@ -65,7 +66,7 @@ function operatingPoint(turbine: Turbine, file: string, question: BladeQuestion)
   }
   const steady = orRefuse(
     file,
-    () => new Trim(turbine, surfaceRotor(surfaceOf(turbine))).at(windSpeed),
+    () => new Trim(turbine, surfaceRotor(cachedSurface(turbine))).at(windSpeed),
     'give --rotor-speed and --pitch',
   );
   const parts = [rotorSpeed === undefined ? 'rotor speed' : '', pitch === undefined ? 'pitch' : ''].filter(Boolean);
@@ -93,8 +94,4 @@ function orRefuse<T>(where: string, make: () => T, advice?: string): T {
     const message = (cause as Error).message;
     throw refusal(where, advice === undefined ? message : `${message}; ${advice}`);
   }
-}
-
-function refusal(where: string, message: string): InputError {
-  return new InputError([{ file: where, line: 0, column: 0, message }]);
 }

@@ -1,4 +1,5 @@
 import type { Command } from 'commander';
+import { collectSets } from './set-option.ts';
 
 interface Options {
   wind: string;
@@ -24,7 +25,7 @@ export function registerBlade(program: Command): void {
     .option('--pitch <angle>', 'such as "3 deg" (default: steady operation)')
     .option('--stations <n>', 'how many stations to list, 1 to 200', '12')
     .option('--picture <file>', 'draw velocity triangles and angles of attack to an .svg or .html file')
-    .option('--set <path=value>', 'change a value of the file (may be repeated)', collect, [])
+    .option('--set <path=value>', 'change a value of the file (may be repeated)', collectSets, [])
     .addHelpText('after', '\nExample:\n  galehold blade my-turbine.yaml --wind "14 m/s" --picture blade.html')
     .action(async (file: string, options: Options) => {
       const [{ loadTurbine }, { bladeView }, { bladeText }] = await Promise.all([
@@ -40,20 +41,13 @@ export function registerBlade(program: Command): void {
     });
 }
 
-const collect = (value: string, before: string[]): string[] => [...before, value];
-
 async function draw(view: import('./blade-view.ts').BladeView, file: string): Promise<void> {
-  const [{ bladePage, bladePicture }, { writeWholeFile }, { InputError }] = await Promise.all([
+  const [{ bladePage, bladePicture }, { writeAsked }, { refusal }] = await Promise.all([
     import('./blade-picture.ts'),
     import('./whole-file.ts'),
     import('../scenarios/input-error.ts'),
   ]);
-  const refused = (message: string) => new InputError([{ file, line: 0, column: 0, message }]);
   const ending = /\.(svg|html)$/.exec(file)?.[1];
-  if (ending === undefined) throw refused('a picture is written to a file that ends in .svg or .html');
-  try {
-    await writeWholeFile(file, ending === 'svg' ? bladePicture(view) : bladePage(view));
-  } catch (cause) {
-    throw refused(`cannot be written (${(cause as Error).message})`);
-  }
+  if (ending === undefined) throw refusal(file, 'a picture is written to a file that ends in .svg or .html');
+  await writeAsked(file, ending === 'svg' ? bladePicture(view) : bladePage(view));
 }

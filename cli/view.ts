@@ -1,5 +1,6 @@
 import { resolve } from 'node:path';
 import type { Command } from 'commander';
+import type { ViewedRun } from '../scenarios/page.ts';
 
 /** `galehold view`: one HTML file from the results of one or several runs. */
 export function registerView(program: Command): void {
@@ -15,27 +16,28 @@ export function registerView(program: Command): void {
     .option('--title <text>', "the page's heading (default: the scenario's title)")
     .addHelpText('after', '\nExample:\n  galehold view results/grid-loss-at-crest results/steady-12 --out view.html')
     .action(async (folders: string[], options: { out: string; title?: string }) => {
-      const [{ readStoredResult }, { InputError }, { assemblePage }, { readPageTemplate }, { writeWholeFile }] =
-        await Promise.all([
-          import('../scenarios/stored-result.ts'),
-          import('../scenarios/input-error.ts'),
-          import('../scenarios/page.ts'),
-          import('./page-template.ts'),
-          import('./whole-file.ts'),
-        ]);
+      const { readStoredResult } = await import('../scenarios/stored-result.ts');
       const runs = await Promise.all(folders.map(readStoredResult));
       for (const run of runs) for (const sentence of run.missing ?? []) console.error(`${run.name}: ${sentence}`);
-
-      const title = options.title ?? titleOf(runs.map((run) => run.summary.scenario.title));
-      const page = assemblePage(await readPageTemplate(), { title, runs });
-      try {
-        await writeWholeFile(options.out, page);
-      } catch (cause) {
-        const message = `cannot be written (${(cause as Error).message})`;
-        throw new InputError([{ file: options.out, line: 0, column: 0, message }]);
-      }
-      console.log(`${resolve(options.out)}  (${(page.length / 1e6).toFixed(1)} MB, opens in any browser)`);
+      console.log(await writePage(options.out, runs, options.title));
     });
+}
+
+/**
+ * Writes one page of `runs`, headed `title` (by default the scenario's).
+ * @returns where it is, in words
+ * @throws InputError where the place cannot be written
+ */
+export async function writePage(file: string, runs: readonly ViewedRun[], title?: string): Promise<string> {
+  const [{ assemblePage }, { readPageTemplate }, { writeAsked }] = await Promise.all([
+    import('../scenarios/page.ts'),
+    import('./page-template.ts'),
+    import('./whole-file.ts'),
+  ]);
+  const heading = title ?? titleOf(runs.map((run) => run.summary.scenario.title));
+  const page = assemblePage(await readPageTemplate(), { title: heading, runs });
+  await writeAsked(file, page);
+  return `${resolve(file)}  (${(page.length / 1e6).toFixed(1)} MB, opens in any browser)`;
 }
 
 function titleOf(titles: readonly string[]): string {

@@ -1,4 +1,5 @@
 import { rename, rm, writeFile } from 'node:fs/promises';
+import { refusal } from '../scenarios/input-error.ts';
 
 /** Writes a text file whole or not at all. Throws what the file system says. */
 export async function writeWholeFile(path: string, text: string): Promise<void> {
@@ -9,5 +10,14 @@ export async function writeWholeFile(path: string, text: string): Promise<void> 
   } catch (cause) {
     await rm(draft, { force: true });
     throw cause;
+  }
+}
+
+/** Writes a text file that the user asked for, whole or not at all. Throws InputError where that fails. */
+export async function writeAsked(file: string, text: string): Promise<void> {
+  try {
+    await writeWholeFile(file, text);
+  } catch (cause) {
+    throw refusal(file, `cannot be written (${(cause as Error).message})`);
   }
 }

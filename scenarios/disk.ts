@@ -1,7 +1,7 @@
 /** Reads scenarios and turbines from the disk. */
 import { createHash } from 'node:crypto';
 import { existsSync } from 'node:fs';
-import { readFile } from 'node:fs/promises';
+import { readdir, readFile } from 'node:fs/promises';
 import { dirname, isAbsolute, join, normalize, relative, resolve, sep } from 'node:path';
 import { fileURLToPath, pathToFileURL } from 'node:url';
 import type { Turbine } from '../sim/turbine.ts';
@@ -75,4 +75,11 @@ export function shippedFolder(): string {
   let folder = dirname(fileURLToPath(import.meta.url));
   while (!existsSync(join(folder, 'package.json')) && dirname(folder) !== folder) folder = dirname(folder);
   return join(folder, 'scenarios', 'shipped');
+}
+
+/** Paths of the shipped scenarios, in the order of the story they tell. */
+export async function shippedScenarios(): Promise<string[]> {
+  const folder = shippedFolder();
+  const files = (await readdir(folder)).filter((name) => name.endsWith('.yaml'));
+  return files.sort().map((name) => join(folder, name));
 }

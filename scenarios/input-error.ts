@@ -39,3 +39,8 @@ export class InputError extends Error {
     this.problems = inOrder;
   }
 }
+
+/** The error that a whole file, or a command-line argument, is unusable. */
+export function refusal(what: string, message: string): InputError {
+  return new InputError([problemAt({ argument: what }, message)]);
+}

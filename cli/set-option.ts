@@ -1,0 +1,4 @@
+/** Gathers a repeatable option's values. */
+export function collectSets(value: string, earlier: string[]): string[] {
+  return [...earlier, value];
+}
