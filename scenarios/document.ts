@@ -152,13 +152,14 @@ export function treeAt(tree: Tree, path: TreePath): Tree | undefined {
   return at;
 }
 
-/** Where the value at the path stands or, where there is none, the nearest thing around it that does. */
+/**
+ * Where the value at the path stands (a mapping or list: its key) or, where there is none, the nearest thing around it
+ * that does.
+ */
 export function placeOf(tree: Tree, path: TreePath): Place {
   for (let length = path.length; length > 0; length--) {
     const found = treeAt(tree, path.slice(0, length));
-    if (!found) continue;
-    const isMissingInside = length < path.length;
-    return isMissingInside ? (keyPlaceOf(tree, path.slice(0, length)) ?? found.place) : found.place;
+    if (found) return (found.kind === 'scalar' ? undefined : keyPlaceOf(tree, path.slice(0, length))) ?? found.place;
   }
   return tree.place;
 }
@@ -206,7 +207,8 @@ function replaced(tree: Tree | undefined, steps: readonly string[], done: readon
   if (tree === undefined || tree.kind === 'mapping') {
     const mapping: Mapping = tree ?? { kind: 'mapping', entries: new Map(), place: by.key };
     const old = mapping.entries.get(step);
-    return withEntry(mapping, step, { key: old?.key ?? by.key, value: onward(old?.value) });
+    const key = rest.length === 0 ? by.key : (old?.key ?? by.key);
+    return withEntry(mapping, step, { key, value: onward(old?.value) });
   }
   if (tree.kind === 'list') {
     const index = itemIndex(tree.items, step, done, by);

@@ -43,6 +43,13 @@ function unknownWord(input: unknown, known: readonly string[]): string {
   return `one of ${known.join(', ')} is due here, not ${inWords(input)}`;
 }
 
+/** What the members of a union take, in words. */
+function noMember(issue: RawIssue & { code: 'invalid_union' }): string {
+  const expected = issue.errors.flat().flatMap((inner) => (inner.code === 'invalid_type' ? [inner.expected] : []));
+  const words = [...new Set(expected)].map((type) => DUE[type] ?? type);
+  return `${words.join(' or ')} is due here, not ${inWords(issue.input)}`;
+}
+
 /** The value at the path's last key, as the issue's own input shows it. */
 function discriminatorOf(issue: RawIssue & { code: 'invalid_union' }): unknown {
   const { input, discriminator } = issue;
@@ -65,18 +72,26 @@ function message(issue: RawIssue): string | undefined {
     const known = ('options' in issue ? (issue.options as unknown[]) : []).map(String);
     return given === undefined ? `${MISSING}: ${known.join(', ')}` : unknownWord(given, known);
   }
-  return issue.input === undefined ? MISSING : undefined;
+  if (issue.input === undefined) return MISSING;
+  return issue.code === 'invalid_union' ? noMember(issue) : undefined;
 }
 
 /** Stands for "missing key ..." until the path is known. */
 const MISSING = '\u0000missing';
 
-/** The issues of the union member that the input was meant for: the one whose own type fits. */
+/** How far an input is from a union member: unknown keys tell most. */
+function strangeness(issues: readonly Issue[]): number {
+  const unknown = issues.filter((issue) => issue.code === 'unrecognized_keys').length;
+  return 100 * unknown + issues.length;
+}
+
+/** The issues of the union member that the input was meant for: of those whose own type fits, the nearest. */
 function unfolded(issue: Issue): Issue[] {
   if (issue.code !== 'invalid_union') return [issue];
-  const meant = issue.errors.find(
-    (issues) => !issues.some((inner) => inner.path.length === 0 && inner.code !== 'unrecognized_keys'),
-  );
+  const fitsItself = (inner: Issue) => inner.path.length > 0 || inner.code === 'unrecognized_keys';
+  const [meant] = issue.errors
+    .filter((issues) => issues.length > 0 && issues.every(fitsItself))
+    .toSorted((a, b) => strangeness(a) - strangeness(b));
   if (!meant) return [issue];
   return meant.flatMap((inner) => unfolded({ ...inner, path: [...issue.path, ...inner.path] }));
 }

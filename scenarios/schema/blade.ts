@@ -2,7 +2,7 @@
 import { z } from 'zod';
 import type { AirfoilData, BladeData, CoefficientTables, RotorAerodynamics } from '../../sim/turbine.ts';
 import { suggestion } from '../nearest.ts';
-import { camelKeys, count, mapping, number, quantity, tag, text } from './field.ts';
+import { addFault, camelKeys, count, mapping, number, onceDecoded, quantity, tag, text } from './field.ts';
 import { firstNotRising, table } from './table.ts';
 
 const DEGREE = Math.PI / 180;
@@ -22,21 +22,22 @@ const airfoilTable = mapping({
   polar,
   aspect_ratio: number('Length over mean chord of the blade, for the flat-plate extension', { above: 0 }).prefault(15),
 })
-  .superRefine(({ polar }, context) => {
-    const fault = (path: (string | number)[], message: string) =>
-      context.addIssue({ code: 'custom', path: ['polar', ...path], message });
-    const falling = firstNotRising(polar.angle);
-    if (falling >= 0) fault(['rows', falling], 'the angle of attack must rise from row to row');
-    const first = polar.angle[0] ?? Number.NaN;
-    const last = polar.angle.at(-1) ?? Number.NaN;
-    const isShort = first > WORKING_ANGLES.from + 1e-9 || last < WORKING_ANGLES.to - 1e-9;
-    if (falling < 0 && isShort) {
-      const degrees = (angle: number) => Number((angle / DEGREE).toPrecision(4));
-      fault([], `the polar covers ${degrees(first)} to ${degrees(last)} deg; it must cover at least -10 to 20 deg`);
-    }
-    const negative = polar.drag.findIndex((drag) => drag < 0);
-    if (negative >= 0) fault(['rows', negative], 'the drag coefficient must not be negative');
-  })
+  .superRefine(
+    onceDecoded(({ polar }, context) => {
+      const fault = (path: (string | number)[], message: string) => addFault(context, message, ['polar', ...path]);
+      const falling = firstNotRising(polar.angle);
+      if (falling >= 0) fault(['rows', falling], 'the angle of attack must rise from row to row');
+      const first = polar.angle[0] ?? Number.NaN;
+      const last = polar.angle.at(-1) ?? Number.NaN;
+      const isShort = first > WORKING_ANGLES.from + 1e-9 || last < WORKING_ANGLES.to - 1e-9;
+      if (falling < 0 && isShort) {
+        const degrees = (angle: number) => Number((angle / DEGREE).toPrecision(4));
+        fault([], `the polar covers ${degrees(first)} to ${degrees(last)} deg; it must cover at least -10 to 20 deg`);
+      }
+      const negative = polar.drag.findIndex((drag) => drag < 0);
+      if (negative >= 0) fault(['rows', negative], 'the drag coefficient must not be negative');
+    }),
+  )
   .transform(({ polar, ...rest }): AirfoilData => ({ ...camelKeys(rest), ...polar }));
 
 const airfoilFormula = mapping({
@@ -53,13 +54,15 @@ const airfoilFormula = mapping({
 const airfoils = z
   .array(z.discriminatedUnion('kind', [airfoilFormula, airfoilTable]))
   .min(1)
-  .superRefine((list, context) => {
-    list.forEach(({ name }, index) => {
-      if (list.findIndex((other) => other.name === name) < index) {
-        context.addIssue({ code: 'custom', path: [index, 'name'], message: `a second airfoil is called "${name}"` });
-      }
-    });
-  })
+  .superRefine(
+    onceDecoded((list, context) => {
+      list.forEach(({ name }, index) => {
+        if (list.findIndex((other) => other.name === name) < index) {
+          addFault(context, `a second airfoil is called "${name}"`, [index, 'name']);
+        }
+      });
+    }),
+  )
   .meta({ description: 'The airfoils that blade sections refer to by name.' });
 
 const optimumLayout = mapping({
@@ -79,11 +82,13 @@ const optimumLayout = mapping({
       }).transform(camelKeys),
     )
     .min(1)
-    .superRefine((sections, context) => {
-      const index = firstNotRising(sections.map((s) => s.relativeRadius));
-      if (index < 0) return;
-      context.addIssue({ code: 'custom', path: [index, 'relative_radius'], message: 'relative radii must rise' });
-    })
+    .superRefine(
+      onceDecoded((sections, context) => {
+        const index = firstNotRising(sections.map((s) => s.relativeRadius));
+        if (index < 0) return;
+        addFault(context, 'relative radii must rise', [index, 'relative_radius']);
+      }),
+    )
     .meta({ description: 'Airfoils along the blade; sections between blend.' }),
 }).transform((blade): BladeData => camelKeys(blade));
 
@@ -97,17 +102,18 @@ const stationBlade = mapping({
   kind: tag('stations', 'stations', 'A blade given station by station.'),
   stations,
 })
-  .superRefine(({ stations: { radius, chord } }, context) => {
-    const fault = (row: number, message: string) =>
-      context.addIssue({ code: 'custom', path: ['stations', 'rows', row], message });
-    radius.forEach((r, row) => {
-      const before = radius[row - 1] ?? Number.NEGATIVE_INFINITY;
-      if (r === before) fault(row, `a second station stands at radius ${r} m`);
-      if (r < before) fault(row, `radii must rise from root to tip, but ${r} m follows ${before} m`);
-      if (r < 0) fault(row, `a radius must not be negative, but is ${r} m`);
-      if ((chord[row] ?? Number.NaN) <= 0) fault(row, `a chord must be above 0 m, but is ${chord[row]} m`);
-    });
-  })
+  .superRefine(
+    onceDecoded(({ stations: { radius, chord } }, context) => {
+      const fault = (row: number, message: string) => addFault(context, message, ['stations', 'rows', row]);
+      radius.forEach((r, row) => {
+        const before = radius[row - 1] ?? Number.NEGATIVE_INFINITY;
+        if (r === before) fault(row, `a second station stands at radius ${r} m`);
+        if (r < before) fault(row, `radii must rise from root to tip, but ${r} m follows ${before} m`);
+        if (r < 0) fault(row, `a radius must not be negative, but is ${r} m`);
+        if ((chord[row] ?? Number.NaN) <= 0) fault(row, `a chord must be above 0 m, but is ${chord[row]} m`);
+      });
+    }),
+  )
   .transform(
     ({ kind, stations: { radius, chord, twist, airfoil } }): BladeData => ({
       kind,
@@ -131,17 +137,15 @@ const blade = mapping({
   kind: tag('blade', 'blade', 'Coefficients are computed from the blade.'),
   blade: z.discriminatedUnion('kind', [optimumLayout, stationBlade]).meta({ description: 'The blade.' }),
   airfoils,
-}).superRefine(({ blade, airfoils }, context) => {
-  const known = airfoils.map((a) => a.name);
-  for (const { name, path } of airfoilsUsed(blade)) {
-    if (known.includes(name)) continue;
-    context.addIssue({
-      code: 'custom',
-      path: ['blade', ...path],
-      message: `unknown airfoil "${name}"${suggestion(name, known)}`,
-    });
-  }
-});
+}).superRefine(
+  onceDecoded(({ blade, airfoils }, context) => {
+    const known = airfoils.map((a) => a.name);
+    for (const { name, path } of airfoilsUsed(blade)) {
+      if (known.includes(name)) continue;
+      addFault(context, `unknown airfoil "${name}"${suggestion(name, known)}`, ['blade', ...path]);
+    }
+  }),
+);
 
 const coefficients = table(
   {
@@ -211,12 +215,14 @@ const tables = mapping({
   kind: tag('tables', 'tables', 'Coefficients are given.'),
   coefficients,
 })
-  .superRefine(({ coefficients }, context) => {
-    for (const { row, message } of gridFaults(coefficients)) {
-      const path = row === undefined ? ['coefficients'] : ['coefficients', 'rows', row];
-      context.addIssue({ code: 'custom', path, message });
-    }
-  })
+  .superRefine(
+    onceDecoded(({ coefficients }, context) => {
+      for (const { row, message } of gridFaults(coefficients)) {
+        const path = row === undefined ? ['coefficients'] : ['coefficients', 'rows', row];
+        addFault(context, message, path);
+      }
+    }),
+  )
   .transform(({ kind, coefficients }) => ({ kind, tables: grid(coefficients) }));
 
 export const aerodynamics: z.ZodType<RotorAerodynamics> = z

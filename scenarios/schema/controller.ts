@@ -5,8 +5,8 @@ import type { GainScheduleSettings } from '../../controllers/gain-schedule.ts';
 import type { SupervisorSettings } from '../../controllers/supervisor.ts';
 import { formatQuantity } from '../quantity.ts';
 import type { LawSettings } from '../scenario.ts';
-import { camelKeys, choice, mapping, number, quantity, tag, text } from './field.ts';
-import { preamble } from './file-kind.ts';
+import { addFault, camelKeys, choice, mapping, number, onceDecoded, quantity, tag, text } from './field.ts';
+import { preamble } from './preamble.ts';
 import { firstNotRising } from './table.ts';
 
 const HALF_TURN = { atLeast: -Math.PI, atMost: Math.PI };
@@ -33,16 +33,14 @@ const schedule = z
         .array(number('Factor on the gain', { above: 0 }))
         .min(2)
         .meta({ description: 'One factor a pitch angle.' }),
-    }).superRefine(({ pitch, factor }, context) => {
-      const index = firstNotRising(pitch);
-      if (index >= 0) context.addIssue({ code: 'custom', path: ['pitch', index], message: 'pitch angles must rise' });
-      if (pitch.length === factor.length) return;
-      context.addIssue({
-        code: 'custom',
-        path: ['factor'],
-        message: `${pitch.length} pitch angles but ${factor.length} factors are given`,
-      });
-    }),
+    }).superRefine(
+      onceDecoded(({ pitch, factor }, context) => {
+        const index = firstNotRising(pitch);
+        if (index >= 0) addFault(context, 'pitch angles must rise', ['pitch', index]);
+        if (pitch.length === factor.length) return;
+        addFault(context, `${pitch.length} pitch angles but ${factor.length} factors are given`, ['factor']);
+      }),
+    ),
   ])
   .transform((s): GainScheduleSettings => s)
   .meta({ description: 'How the gain is lowered as the blades turn.' });
@@ -75,11 +73,14 @@ function pitchLaw(machine: Machine) {
     maximum: quantity('angle', 'Highest pitch demand', HALF_TURN),
     rate_limit: quantity('pitch rate', 'Fastest change of the demand', { above: 0 }),
   })
-    .superRefine((law, context) => {
-      const fault = (key: string, message: string) => context.addIssue({ code: 'custom', path: [key], message });
-      if (law.minimum >= law.maximum) fault('minimum', 'the minimum must be smaller than the maximum');
-      if (law.maximum < machine.finePitch) fault('maximum', 'the maximum must not lie below the turbine’s fine pitch');
-    })
+    .superRefine(
+      onceDecoded((law, context) => {
+        const fault = (key: string, message: string) => addFault(context, message, [key]);
+        if (law.minimum >= law.maximum) fault('minimum', 'the minimum must be smaller than the maximum');
+        if (law.maximum < machine.finePitch)
+          fault('maximum', 'the maximum must not lie below the turbine’s fine pitch');
+      }),
+    )
     .transform((law): LawSettings => camelKeys(law));
 }
 
@@ -103,23 +104,25 @@ function torqueLaw(machine: Machine) {
     maximum_torque: quantity('torque', 'Largest torque demand', { above: 0, rated: machine.ratedTorque }),
     rate_limit: quantity('torque rate', 'Fastest change of the demand', { above: 0 }),
   })
-    .superRefine((law, context) => {
-      const fault = (key: string, message: string) => context.addIssue({ code: 'custom', path: [key], message });
-      const show = (torque: number) => formatQuantity(torque, 'torque');
-      if (law.cut_in_speed >= law.optimal_from) fault('optimal_from', 'optimal_from must lie above cut_in_speed');
-      if (law.optimal_from >= law.optimal_to) fault('optimal_to', 'optimal_to must lie above optimal_from');
-      if (law.optimal_to >= rated) fault('optimal_to', 'optimal_to must lie below rated generator speed');
-      if (law.maximum_torque < machine.ratedTorque) {
-        fault('maximum_torque', `the maximum must reach rated torque, ${show(machine.ratedTorque)}`);
-      }
-      const torque = law.optimal_gain * law.optimal_to ** 2;
-      if (torque > machine.ratedTorque) {
-        fault(
-          'optimal_gain',
-          `k speed² reaches ${show(torque)} at optimal_to, more than rated torque, ${show(machine.ratedTorque)}`,
-        );
-      }
-    })
+    .superRefine(
+      onceDecoded((law, context) => {
+        const fault = (key: string, message: string) => addFault(context, message, [key]);
+        const show = (torque: number) => formatQuantity(torque, 'torque');
+        if (law.cut_in_speed >= law.optimal_from) fault('optimal_from', 'optimal_from must lie above cut_in_speed');
+        if (law.optimal_from >= law.optimal_to) fault('optimal_to', 'optimal_to must lie above optimal_from');
+        if (law.optimal_to >= rated) fault('optimal_to', 'optimal_to must lie below rated generator speed');
+        if (law.maximum_torque < machine.ratedTorque) {
+          fault('maximum_torque', `the maximum must reach rated torque, ${show(machine.ratedTorque)}`);
+        }
+        const torque = law.optimal_gain * law.optimal_to ** 2;
+        if (torque > machine.ratedTorque) {
+          fault(
+            'optimal_gain',
+            `k speed² reaches ${show(torque)} at optimal_to, more than rated torque, ${show(machine.ratedTorque)}`,
+          );
+        }
+      }),
+    )
     .transform((law): LawSettings => camelKeys(law));
 }
 
@@ -132,16 +135,17 @@ const DUTIES = [
 function laws(machine: Machine) {
   return z
     .array(z.discriminatedUnion('law', [pitchLaw(machine), torqueLaw(machine)]))
-    .superRefine((list, context) => {
-      for (const { law, written, sets } of DUTIES) {
-        const [first, second] = list.flatMap((l, index) => (l.law === law ? [index] : []));
-        if (first === undefined)
-          context.addIssue({ code: 'custom', message: `no law sets the ${sets}; add "law: ${written}"` });
-        if (second !== undefined) {
-          context.addIssue({ code: 'custom', path: [second, 'law'], message: `a second law sets the ${sets}` });
+    .superRefine(
+      onceDecoded((list, context) => {
+        for (const { law, written, sets } of DUTIES) {
+          const [first, second] = list.flatMap((l, index) => (l.law === law ? [index] : []));
+          if (first === undefined) addFault(context, `no law sets the ${sets}; add "law: ${written}"`);
+          if (second !== undefined) {
+            addFault(context, `a second law sets the ${sets}`, [second, 'law']);
+          }
         }
-      }
-    })
+      }),
+    )
     .meta({ description: 'The control laws: one for the pitch, one for the generator torque.' });
 }
 
@@ -198,7 +202,7 @@ export function controllerFile(machine: Machine) {
     .transform((file, context): ControllerFileData => {
       const { name, supervisor } = file;
       const fault = (key: string, message: string) => {
-        context.addIssue({ code: 'custom', path: [key], message });
+        addFault(context, message, [key]);
         return z.NEVER;
       };
       if (file.module !== undefined) {

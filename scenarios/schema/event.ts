@@ -4,7 +4,7 @@ import type { Machine } from '../../controllers/contract.ts';
 import { channelIndex } from '../../sim/channels.ts';
 import type { Action, Trigger } from '../../sim/scripted-event.ts';
 import type { WindMark } from '../../sim/wind/wind.ts';
-import { choice, mapping, quantity, tag } from './field.ts';
+import { addFault, choice, mapping, quantity, tag } from './field.ts';
 import { channelName, decodeLevel, level } from './limit.ts';
 import { blades } from './protection.ts';
 
@@ -30,7 +30,7 @@ function channelCondition(machine: Machine) {
     below: level('Act the first time that it falls past this').optional(),
   }).transform(({ channel, above, below }, context): WrittenTrigger => {
     if ((above === undefined) === (below === undefined)) {
-      context.addIssue({ code: 'custom', message: 'a level is due: either above or below' });
+      addFault(context, 'a level is due: either above or below');
       return z.NEVER;
     }
     const direction = above === undefined ? 'below' : 'above';
@@ -38,11 +38,7 @@ function channelCondition(machine: Machine) {
       const si = decodeLevel(above ?? below ?? Number.NaN, channel, machine);
       return { kind: 'crossing', channel: channelIndex(channel), direction, level: si };
     } catch (error) {
-      context.addIssue({
-        code: 'custom',
-        path: [direction],
-        message: error instanceof Error ? error.message : String(error),
-      });
+      addFault(context, error instanceof Error ? error.message : String(error), [direction]);
       return z.NEVER;
     }
   });
@@ -89,7 +85,7 @@ export function event(machine: Machine) {
     .transform((given, context): WrittenEvent => {
       const { at, when } = given;
       if ((at === undefined) === (when === undefined)) {
-        context.addIssue({ code: 'custom', message: 'a time is due: either "at" or "when"' });
+        addFault(context, 'a time is due: either "at" or "when"');
         return z.NEVER;
       }
       const trigger: WrittenTrigger = when ?? { kind: 'time', at: at ?? Number.NaN };

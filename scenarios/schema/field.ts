@@ -18,6 +18,25 @@ export interface Range {
   atMost?: number;
 }
 
+/**
+ * Adds a problem to a schema's check.
+ * @param path from the value that is checked to the one at fault
+ */
+export function addFault(
+  context: Pick<z.RefinementCtx, 'addIssue'>,
+  message: string,
+  path: (string | number)[] = [],
+): void {
+  context.addIssue({ code: 'custom', message, path });
+}
+
+/** A check of a value as a whole, for `superRefine`: left out where a part of the value could not be decoded. */
+export function onceDecoded<T>(check: (value: T, context: z.RefinementCtx<T>) => void) {
+  return (value: T, context: z.RefinementCtx<T>): void => {
+    if (context.issues.length === 0) check(value, context);
+  };
+}
+
 /** A mapping that knows its keys: an unknown one is an error whose message lists the known ones for `validation.ts`. */
 export function mapping<const Shape extends z.ZodRawShape>(shape: Shape) {
   const known = Object.keys(shape).join(' ');
@@ -53,24 +72,24 @@ export function decodeQuantity(text: string, kind: QuantityKind, rated?: number)
  */
 export function quantity(kind: QuantityKind, description: string, range: Range & { rated?: number } = {}) {
   const isRelative = 'rated' in range;
-  return z
+  const written = z
     .string({ error: ({ input }) => (typeof input === 'number' ? needsUnit(String(input), kind) : undefined) })
-    .transform((text, context) => {
-      try {
-        const value = decodeQuantity(text, kind, range.rated);
-        const breach = rangeBreach(value, range, (bound) => formatQuantity(bound, kind));
-        if (breach === undefined) return value;
-        context.addIssue({ code: 'custom', message: `"${text}" is out of range: it ${breach}` });
-      } catch (error) {
-        context.addIssue({ code: 'custom', message: error instanceof Error ? error.message : String(error) });
-      }
-      return z.NEVER;
-    })
     .meta({
       description: `${description} (${withArticle(kind)}${isRelative ? ', or a multiple of the rated value' : ''})`,
       pattern: QUANTITY_PATTERN,
       examples: isRelative ? [exampleOf(kind), '1.1 rated'] : [exampleOf(kind)],
     });
+  return written.transform((text, context) => {
+    try {
+      const value = decodeQuantity(text, kind, range.rated);
+      const breach = rangeBreach(value, range, (bound) => formatQuantity(bound, kind));
+      if (breach === undefined) return value;
+      addFault(context, `"${text}" is out of range: it ${breach}`);
+    } catch (error) {
+      addFault(context, error instanceof Error ? error.message : String(error));
+    }
+    return z.NEVER;
+  });
 }
 
 /** A plain number. */
@@ -95,20 +114,21 @@ export function count(description: string, atLeast: number, atMost = Number.MAX_
 /** A fraction: a plain number, or per cent. */
 export function fraction(description: string, range: Range) {
   const due = 'a plain number or a percentage is due, for example 0.97 or "97 %"';
-  return z
+  const written = z
     .union([z.number(), z.string()], { error: ({ input }) => (input === undefined ? undefined : due) })
-    .transform((given, context) => {
-      const percent = /^\s*([+-]?\d*\.?\d+)\s*%\s*$/.exec(String(given))?.[1];
-      const value = percent === undefined ? given : Number(percent) / 100;
-      const breach = typeof value === 'number' ? rangeBreach(value, range, String) : undefined;
-      if (typeof value === 'number' && breach === undefined) return value;
-      context.addIssue({
-        code: 'custom',
-        message: breach ? `${given} is out of range: it ${breach}` : `"${given}" is no fraction; ${due}`,
-      });
-      return z.NEVER;
-    })
     .meta({ description: `${description} (a plain number or a percentage)`, examples: [0.97, '97 %'] });
+  return written.transform((given, context) => {
+    const percent = /^\s*([+-]?\d*\.?\d+)\s*%\s*$/.exec(String(given))?.[1];
+    const value = percent === undefined ? given : Number(percent) / 100;
+    if (typeof value === 'string') {
+      addFault(context, `"${given}" is no fraction; ${due}`);
+      return z.NEVER;
+    }
+    const breach = rangeBreach(value, range, String);
+    if (breach === undefined) return value;
+    addFault(context, `${given} is out of range: it ${breach}`);
+    return z.NEVER;
+  });
 }
 
 export function text(description: string) {

@@ -6,7 +6,7 @@ import { METRIC_NAMES } from '../metrics.ts';
 import { suggestion } from '../nearest.ts';
 import type { QuantityKind } from '../quantity.ts';
 import type { LimitData, Statistic } from '../scenario.ts';
-import { choice, decodeQuantity, mapping, number, quantity, text } from './field.ts';
+import { addFault, choice, decodeQuantity, mapping, number, onceDecoded, quantity, text } from './field.ts';
 
 /** What a unit measures, as channels and metrics spell it at the end of their names. */
 const UNITS: Readonly<Record<string, { kind: QuantityKind; size: number; offset?: number }>> = {
@@ -56,14 +56,13 @@ function unknownName(name: string): string {
 export function channelName(description: string) {
   return z
     .string()
-    .superRefine((name, context) => {
-      if (!CHANNEL_NAMES.includes(name)) {
-        context.addIssue({
-          code: 'custom',
-          message: `there is no channel "${name}"${suggestion(name, CHANNEL_NAMES)}`,
-        });
-      }
-    })
+    .superRefine(
+      onceDecoded((name, context) => {
+        if (!CHANNEL_NAMES.includes(name)) {
+          addFault(context, `there is no channel "${name}"${suggestion(name, CHANNEL_NAMES)}`);
+        }
+      }),
+    )
     .meta({ description, examples: ['rotor_speed_rpm'] });
 }
 
@@ -136,7 +135,7 @@ function faultsOf(limit: Written): Fault[] {
     faults.push({ key: 'statistic', message: `"${channel}" is a metric and takes no statistic` });
   const needsLevel = NEEDS_LEVEL.includes(statistic);
   if (needsLevel && level === undefined)
-    faults.push({ key: 'level', message: `the statistic "${statistic}" needs a level` });
+    faults.push({ key: 'level', message: `the statistic ${statistic?.replace(' ', '_')} needs a level` });
   if (!needsLevel && level !== undefined)
     faults.push({ key: 'level', message: 'only time_above, time_below and count take a level' });
   if ((statistic === 'rainflow') !== (exponent !== undefined)) {
@@ -188,7 +187,7 @@ export function limit(machine: Machine) {
     const relation = given.below === undefined ? 'above' : 'below';
     const bound = attempt(relation, decodeBound);
     const level = attempt('level', (value) => decodeLevel(value, channel, machine));
-    for (const { key, message } of faults) context.addIssue({ code: 'custom', path: [key], message });
+    for (const { key, message } of faults) addFault(context, message, [key]);
     if (faults.length > 0 || bound === undefined) return z.NEVER;
     return { channel, statistic, level, exponent, from, to, relation, bound };
   });

@@ -5,20 +5,19 @@ import type { GuardSettings, ProtectionSettings } from '../../controllers/protec
 import type { StopSequence, StopStep } from '../../controllers/stop-sequence.ts';
 import { suggestion } from '../nearest.ts';
 import { formatQuantity } from '../quantity.ts';
-import { camelKeys, choice, mapping, quantity, tag, text } from './field.ts';
-import { preamble } from './file-kind.ts';
+import { addFault, camelKeys, choice, mapping, onceDecoded, quantity, tag, text } from './field.ts';
+import { preamble } from './preamble.ts';
 
 /** Blades as files count them, from 1; decoded to counting from 0. */
 export function blades(machine: Machine, description: string) {
   return z
     .array(
-      z.int().superRefine((blade, context) => {
-        if (blade >= 1 && !(blade > machine.bladeCount)) return;
-        context.addIssue({
-          code: 'custom',
-          message: `there is no blade ${blade}; blades are counted 1 to ${machine.bladeCount}`,
-        });
-      }),
+      z.int().superRefine(
+        onceDecoded((blade, context) => {
+          if (blade >= 1 && !(blade > machine.bladeCount)) return;
+          addFault(context, `there is no blade ${blade}; blades are counted 1 to ${machine.bladeCount}`);
+        }),
+      ),
     )
     .min(1)
     .transform((list) => list.map((blade) => blade - 1))
@@ -56,10 +55,12 @@ function stopStep(machine: Machine) {
     pitch_above: quantity('angle', 'Until every blade has passed this angle', isWithinHalfTurn).optional(),
     at_most: quantity('time', 'Go on after this time, whatever the conditions', { above: 0 }).optional(),
   })
-    .superRefine((s, context) => {
-      if (s.for_time !== undefined || s.rotor_speed_below !== undefined || s.pitch_above !== undefined) return;
-      context.addIssue({ code: 'custom', message: 'a condition is due: for_time, rotor_speed_below or pitch_above' });
-    })
+    .superRefine(
+      onceDecoded((s, context) => {
+        if (s.for_time !== undefined || s.rotor_speed_below !== undefined || s.pitch_above !== undefined) return;
+        addFault(context, 'a condition is due: for_time, rotor_speed_below or pitch_above');
+      }),
+    )
     .transform((s): StopStep => {
       const { do: kind, ...conditions } = s;
       return { kind, ...camelKeys(conditions) };
@@ -82,10 +83,12 @@ function stopStep(machine: Machine) {
 function stops(machine: Machine) {
   return z
     .record(z.string(), z.array(stopStep(machine)).min(1))
-    .superRefine((sequences, context) => {
-      if ('normal' in sequences) return;
-      context.addIssue({ code: 'custom', message: 'a stop called "normal" is due; the supervisor uses it' });
-    })
+    .superRefine(
+      onceDecoded((sequences, context) => {
+        if ('normal' in sequences) return;
+        addFault(context, 'a stop called "normal" is due; the supervisor uses it');
+      }),
+    )
     .meta({
       description:
         'Stop sequences by name: orders in turn, where only "wait" holds the next one up. One must be called "normal".',
@@ -108,14 +111,14 @@ function aboveRated(rated: number) {
   return (level: number, context: z.RefinementCtx<number>) => {
     if (!(level <= rated)) return;
     const message = `the trip level ${formatQuantity(level, 'rotational speed')} must lie above rated speed, ${formatQuantity(rated, 'rotational speed')}`;
-    context.addIssue({ code: 'custom', message });
+    addFault(context, message);
   };
 }
 
 function guards(machine: Machine) {
   const { ratedRotorSpeed, ratedGeneratorSpeed } = machine;
   const speed = (description: string, rated: number) =>
-    quantity('rotational speed', description, { above: 0, rated }).superRefine(aboveRated(rated));
+    quantity('rotational speed', description, { above: 0, rated }).superRefine(onceDecoded(aboveRated(rated)));
   const guard = z.discriminatedUnion('watch', [
     mapping({
       watch: tag('rotor_overspeed', 'rotor overspeed', 'Rotor speed by the protection’s own sensor.'),
@@ -137,16 +140,14 @@ function guards(machine: Machine) {
   ]);
   return z
     .array(guard.transform((g): GuardSettings => ({ ...g, name: g.name ?? g.watch })))
-    .superRefine((list, context) => {
-      list.forEach(({ name }, index) => {
-        if (list.findIndex((other) => other.name === name) === index) return;
-        context.addIssue({
-          code: 'custom',
-          path: [index],
-          message: `a second guard is called "${name}"; give one of them another name`,
+    .superRefine(
+      onceDecoded((list, context) => {
+        list.forEach(({ name }, index) => {
+          if (list.findIndex((other) => other.name === name) === index) return;
+          addFault(context, `a second guard is called "${name}"; give one of them another name`, [index]);
         });
-      });
-    })
+      }),
+    )
     .meta({ description: 'The guards in order of precedence.' });
 }
 
@@ -166,17 +167,15 @@ export function protectionFile(machine: Machine) {
     guards: guards(machine),
     stops: stops(machine),
   })
-    .superRefine(({ guards, stops }, context) => {
-      const known = Object.keys(stops);
-      guards.forEach(({ stop }, index) => {
-        if (known.includes(stop)) return;
-        context.addIssue({
-          code: 'custom',
-          path: ['guards', index, 'stop'],
-          message: `unknown stop "${stop}"${suggestion(stop, known)}`,
+    .superRefine(
+      onceDecoded(({ guards, stops }, context) => {
+        const known = Object.keys(stops);
+        guards.forEach(({ stop }, index) => {
+          if (known.includes(stop)) return;
+          addFault(context, `unknown stop "${stop}"${suggestion(stop, known)}`, ['guards', index, 'stop']);
         });
-      });
-    })
+      }),
+    )
     .transform(
       ({ name, sample_time: sampleTime, guards, stops }): ProtectionData => ({
         name,

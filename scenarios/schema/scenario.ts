@@ -3,9 +3,9 @@ import { z } from 'zod';
 import type { Machine } from '../../controllers/contract.ts';
 import type { LimitData, ScenarioData, StartData } from '../scenario.ts';
 import { event, type WrittenEvent } from './event.ts';
-import { camelKeys, choice, count, mapping, number, quantity, tag, text } from './field.ts';
-import { preamble } from './file-kind.ts';
+import { addFault, camelKeys, choice, count, mapping, number, onceDecoded, quantity, tag, text } from './field.ts';
 import { channelName, limit } from './limit.ts';
+import { preamble } from './preamble.ts';
 import { type WindPart, wind } from './wind.ts';
 
 /** Another file, with values of it overridden where it is used. `load.ts` follows it. */
@@ -56,14 +56,12 @@ const expected = mapping({
   verdict: z.enum(['holds', 'broken']).meta({ description: 'What the author expects of the limits.' }),
   because: text('Why, where they are expected to break.').optional(),
 })
-  .superRefine(({ verdict, because }, context) => {
-    if (verdict !== 'broken' || because !== undefined) return;
-    context.addIssue({
-      code: 'custom',
-      path: ['because'],
-      message: 'an expected failure needs a reason: add "because"',
-    });
-  })
+  .superRefine(
+    onceDecoded(({ verdict, because }, context) => {
+      if (verdict !== 'broken' || because !== undefined) return;
+      addFault(context, 'an expected failure needs a reason: add "because"', ['because']);
+    }),
+  )
   .prefault({ verdict: 'holds' })
   .meta({ description: 'What the author expects.' });
 
@@ -133,9 +131,11 @@ export function scenarioFile(machine: Machine) {
     seed: count('Seed of every random number', 0).prefault(1),
     integrator,
   })
-    .superRefine((file, context) => {
-      for (const { path, message } of faultsOfTime(file)) context.addIssue({ code: 'custom', path, message });
-    })
+    .superRefine(
+      onceDecoded((file, context) => {
+        for (const { path, message } of faultsOfTime(file)) addFault(context, message, path);
+      }),
+    )
     .transform(
       ({ title, story = '', expect, ...file }): ScenarioFileData => ({
         title,

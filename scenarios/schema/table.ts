@@ -1,8 +1,8 @@
 /** Tables of numbers: columns with their units, then rows. In YAML, or as the name of a CSV file. */
 import { z } from 'zod';
-import { suggestion } from '../nearest.ts';
+import { nearest, suggestion } from '../nearest.ts';
 import { exampleOf, parseQuantity, type QuantityKind } from '../quantity.ts';
-import { mapping } from './field.ts';
+import { addFault, mapping } from './field.ts';
 
 /** The keys under which a text names a CSV file; `load.ts` puts the file's table in the text's place. */
 export const TABLE_KEYS: readonly string[] = ['polar', 'stations', 'backup', 'coefficients', 'series'];
@@ -71,7 +71,8 @@ function checkHeader(headers: readonly HeaderCell[], columns: Columns, report: R
     }
   });
   for (const [name, column] of Object.entries(columns)) {
-    if (!column.optional && !headers.some((h) => h.name === name)) wrong(['columns'], `missing column "${name}"`);
+    const isThere = headers.some((h) => h.name === name || nearest(h.name, Object.keys(columns)) === name);
+    if (!column.optional && !isThere) wrong(['columns'], `missing column "${name}"`);
   }
   return isGood;
 }
@@ -124,7 +125,7 @@ export function table<const C extends Columns>(columns: C, description: string, 
         input === undefined ? undefined : 'a table (columns and rows) or the name of a .csv file is due here',
     })
     .transform((given, context) => {
-      const report: Report = (path, message) => context.addIssue({ code: 'custom', path, message });
+      const report: Report = (path, message) => addFault(context, message, path);
       const { columns: names, rows } = given as z.infer<typeof written>;
       const headers = names.map(readHeader);
       return checkHeader(headers, columns, report) ? decode(headers, rows, columns, report) : z.NEVER;

@@ -4,8 +4,20 @@ import type { DrivetrainData, Turbine } from '../../sim/turbine.ts';
 import { machineOf } from '../machine.ts';
 import { formatQuantity } from '../quantity.ts';
 import { aerodynamics } from './blade.ts';
-import { camelKeys, choice, count, fraction, mapping, number, quantity, tag, text } from './field.ts';
-import { preamble } from './file-kind.ts';
+import {
+  addFault,
+  camelKeys,
+  choice,
+  count,
+  fraction,
+  mapping,
+  number,
+  onceDecoded,
+  quantity,
+  tag,
+  text,
+} from './field.ts';
+import { preamble } from './preamble.ts';
 import { firstNotRising, table } from './table.ts';
 
 const positive = { above: 0 };
@@ -21,14 +33,16 @@ const ratings = mapping({
   cut_out_wind: quantity('speed', 'Wind at which power production ends', positive),
   fine_pitch: quantity('angle', 'Lowest pitch in power production', { above: -Math.PI / 2, below: Math.PI / 2 }),
 })
-  .superRefine((r, context) => {
-    const fault = (key: string, message: string) => context.addIssue({ code: 'custom', path: [key], message });
-    if (r.minimum_speed >= r.rotor_speed) fault('minimum_speed', 'the minimum speed must lie below the rated speed');
-    if (r.never_exceed_speed <= r.rotor_speed) {
-      fault('never_exceed_speed', 'the never-exceed speed must lie above the rated speed');
-    }
-    if (r.cut_in_wind >= r.cut_out_wind) fault('cut_in_wind', 'the cut-in wind must lie below the cut-out wind');
-  })
+  .superRefine(
+    onceDecoded((r, context) => {
+      const fault = (key: string, message: string) => addFault(context, message, [key]);
+      if (r.minimum_speed >= r.rotor_speed) fault('minimum_speed', 'the minimum speed must lie below the rated speed');
+      if (r.never_exceed_speed <= r.rotor_speed) {
+        fault('never_exceed_speed', 'the never-exceed speed must lie above the rated speed');
+      }
+      if (r.cut_in_wind >= r.cut_out_wind) fault('cut_in_wind', 'the cut-in wind must lie below the cut-out wind');
+    }),
+  )
   .transform(camelKeys)
   .meta({ description: 'What the machine is built for.' });
 
@@ -39,30 +53,35 @@ const rotor = mapping({
   hub_height: quantity('length', 'Height of the rotor axis above ground', positive),
   aerodynamics,
 })
-  .superRefine((r, context) => {
-    const fault = (path: (string | number)[], message: string) => context.addIssue({ code: 'custom', path, message });
-    const metres = (value: number) => formatQuantity(value, 'length');
-    if (r.hub_radius >= r.radius) fault(['hub_radius'], 'the hub radius must be smaller than the tip radius');
-    if (r.radius >= r.hub_height)
-      fault(['hub_height'], 'the blades would reach the ground: the hub is not higher than the tip radius');
-    if (r.aerodynamics.kind !== 'blade') return;
-    const { blade } = r.aerodynamics;
-    const at = ['aerodynamics', 'blade'];
-    if (blade.kind === 'optimum layout') {
-      if (blade.rootEnd < r.hub_radius || blade.rootEnd >= r.radius) {
-        fault(
-          [...at, 'root_end'],
-          `the root must end between the hub radius ${metres(r.hub_radius)} and the tip radius ${metres(r.radius)}`,
-        );
+  .superRefine(
+    onceDecoded((r, context) => {
+      const fault = (path: (string | number)[], message: string) => addFault(context, message, path);
+      const metres = (value: number) => formatQuantity(value, 'length');
+      if (r.hub_radius >= r.radius) {
+        fault(['hub_radius'], 'the hub radius must be smaller than the tip radius');
+        return;
       }
-      return;
-    }
-    blade.stations.forEach(({ radius }, row) => {
-      if (radius >= r.hub_radius - 1e-9 && radius <= r.radius + 1e-9) return;
-      const message = `the station at ${metres(radius)} lies outside the blade, ${metres(r.hub_radius)} to ${metres(r.radius)}`;
-      fault([...at, 'stations', 'rows', row], message);
-    });
-  })
+      if (r.radius >= r.hub_height)
+        fault(['hub_height'], 'the blades would reach the ground: the hub is not higher than the tip radius');
+      if (r.aerodynamics.kind !== 'blade') return;
+      const { blade } = r.aerodynamics;
+      const at = ['aerodynamics', 'blade'];
+      if (blade.kind === 'optimum layout') {
+        if (blade.rootEnd < r.hub_radius || blade.rootEnd >= r.radius) {
+          fault(
+            [...at, 'root_end'],
+            `the root must end between the hub radius ${metres(r.hub_radius)} and the tip radius ${metres(r.radius)}`,
+          );
+        }
+        return;
+      }
+      blade.stations.forEach(({ radius }, row) => {
+        if (radius >= r.hub_radius - 1e-9 && radius <= r.radius + 1e-9) return;
+        const message = `the station at ${metres(radius)} lies outside the blade, ${metres(r.hub_radius)} to ${metres(r.radius)}`;
+        fault([...at, 'stations', 'rows', row], message);
+      });
+    }),
+  )
   .transform(camelKeys)
   .meta({ description: 'Size and aerodynamics of the rotor.' });
 
@@ -121,19 +140,21 @@ const pitchDrive = mapping({
     1,
   ),
 })
-  .superRefine((p, context) => {
-    const fault = (path: (string | number)[], message: string) => context.addIssue({ code: 'custom', path, message });
-    if (p.minimum >= p.maximum) fault(['minimum'], 'the minimum must be smaller than the maximum');
-    else if (p.feather < p.minimum || p.feather > p.maximum) {
-      fault(['feather'], 'the feathered position must lie between minimum and maximum');
-    }
-    const { travel, rate } = p.backup;
-    const row = firstNotRising(travel);
-    if (row >= 0) fault(['backup', 'rows', row], 'travel must rise from row to row');
-    if ((travel[0] ?? 0) !== 0) fault(['backup', 'rows', 0], 'the first row must be for zero travel');
-    const negative = rate.findIndex((r) => r < 0);
-    if (negative >= 0) fault(['backup', 'rows', negative], 'a rate must not be negative');
-  })
+  .superRefine(
+    onceDecoded((p, context) => {
+      const fault = (path: (string | number)[], message: string) => addFault(context, message, path);
+      if (p.minimum >= p.maximum) fault(['minimum'], 'the minimum must be smaller than the maximum');
+      else if (p.feather < p.minimum || p.feather > p.maximum) {
+        fault(['feather'], 'the feathered position must lie between minimum and maximum');
+      }
+      const { travel, rate } = p.backup;
+      const row = firstNotRising(travel);
+      if (row >= 0) fault(['backup', 'rows', row], 'travel must rise from row to row');
+      if ((travel[0] ?? 0) !== 0) fault(['backup', 'rows', 0], 'the first row must be for zero travel');
+      const negative = rate.findIndex((r) => r < 0);
+      if (negative >= 0) fault(['backup', 'rows', negative], 'a rate must not be negative');
+    }),
+  )
   .transform(camelKeys)
   .meta({ description: 'The drives that turn the blades about their own axes, one a blade.' });
 
@@ -162,11 +183,13 @@ const brake = mapping({
   fade_end: quantity('temperature', 'Disc temperature at which torque has fallen to its floor', positive),
   fade_floor: fraction('Torque left at that temperature', { above: 0, atMost: 1 }),
 })
-  .superRefine((b, context) => {
-    const fault = (key: string, message: string) => context.addIssue({ code: 'custom', path: [key], message });
-    if (b.fade_end <= b.fade_start) fault('fade_end', 'the fade must end at a higher temperature than it starts at');
-    if (b.ambient >= b.fade_start) fault('ambient', 'the surroundings must be cooler than the start of the fade');
-  })
+  .superRefine(
+    onceDecoded((b, context) => {
+      const fault = (key: string, message: string) => addFault(context, message, [key]);
+      if (b.fade_end <= b.fade_start) fault('fade_end', 'the fade must end at a higher temperature than it starts at');
+      if (b.ambient >= b.fade_start) fault('ambient', 'the surroundings must be cooler than the start of the fade');
+    }),
+  )
   .transform(camelKeys)
   .meta({ description: 'The shaft brake.' });
 
@@ -232,7 +255,9 @@ export const turbineFile = mapping({
   sensors,
 })
   .transform(({ galehold: _tag, extends: _base, ...parts }): Turbine => camelKeys(parts))
-  .superRefine((turbine, context) => {
-    for (const { path, message } of faultsBetweenParts(turbine)) context.addIssue({ code: 'custom', path, message });
-  })
+  .superRefine(
+    onceDecoded((turbine, context) => {
+      for (const { path, message } of faultsBetweenParts(turbine)) addFault(context, message, path);
+    }),
+  )
   .meta({ title: 'galehold turbine', description: 'A wind turbine as galehold simulates it.' });

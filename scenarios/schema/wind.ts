@@ -8,7 +8,7 @@ import { steadyWind } from '../../sim/wind/steady.ts';
 import { stepWind } from '../../sim/wind/step.ts';
 import { tableWind } from '../../sim/wind/table.ts';
 import type { WindField } from '../../sim/wind/wind.ts';
-import { camelKeys, choice, fraction, mapping, quantity, tag } from './field.ts';
+import { addFault, camelKeys, choice, fraction, mapping, onceDecoded, quantity, tag } from './field.ts';
 import { firstNotRising, table } from './table.ts';
 
 /** What a wind condition may need to know of the turbine, m. */
@@ -83,13 +83,14 @@ const recorded = mapping({
   kind: tag('table', 'table', 'A recorded or made-up series: linear between rows.'),
   series: table({ time: { kind: 'time' }, speed: { kind: 'speed' } }, 'Wind speed against time, rising', 2),
 })
-  .superRefine(({ series: { time } }, context) => {
-    const fault = (row: number, message: string) =>
-      context.addIssue({ code: 'custom', path: ['series', 'rows', row], message });
-    const row = firstNotRising(time);
-    if (row >= 0) fault(row, `time must rise from row to row, but ${time[row]} s follows ${time[row - 1]} s`);
-    if ((time[0] ?? 0) > 0) fault(0, `the series starts at ${time[0]} s; it must start at 0 s or before`);
-  })
+  .superRefine(
+    onceDecoded(({ series: { time } }, context) => {
+      const fault = (row: number, message: string) => addFault(context, message, ['series', 'rows', row]);
+      const row = firstNotRising(time);
+      if (row >= 0) fault(row, `time must rise from row to row, but ${time[row]} s follows ${time[row - 1]} s`);
+      if ((time[0] ?? 0) > 0) fault(0, `the series starts at ${time[0]} s; it must start at 0 s or before`);
+    }),
+  )
   .transform(({ series }): WindPart => ({ lasts: series.time.at(-1) ?? 0, field: () => tableWind(series) }));
 
 export const wind = z
