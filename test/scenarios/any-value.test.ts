@@ -4,7 +4,7 @@ import { InputError } from '../../scenarios/input-error.ts';
 import { readScenario } from '../../scenarios/load.ts';
 import { CONTROLLER, memoryFiles, PROTECTION, shippedText, TURBINE } from './memory-files.ts';
 
-const SCENARIO = 'grid-loss-at-the-crest.yaml';
+const SCENARIO = '08-grid-loss-at-the-crest.yaml';
 
 /** Every path in a file's content, values and what holds them. */
 function paths(content: unknown, above = ''): string[] {

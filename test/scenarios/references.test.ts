@@ -55,6 +55,7 @@ describe('An override on the command line', () => {
     ['wind.3.speed=16 m/s', '"wind" has 1 item(s), counted from 0, and none is "3"'],
     ['title.x=3', '"title" holds a single value; nothing named "x" is inside it'],
     ['turbine.rotor.radus=66 m', 'unknown key "radus" - did you mean "radius"?'],
+    ['wind=[]', 'at least 1 item(s) are due here'],
     ['nonsense', 'an override is written path=value, for example "seed=7"'],
     ['seed=[1', 'not YAML: flow sequence must end with a ]'],
   ];

@@ -120,7 +120,7 @@ describe('A fresh project', () => {
   });
 
   it('is written into an empty folder', async () => {
-    expect(await createProject(around)).toContain(join(around, 'operating-gust.yaml'));
+    expect(await createProject(around)).toContain(join(around, '04-operating-gust.yaml'));
   });
 
   it('is not written over anything', async () => {

@@ -83,12 +83,14 @@ describe('A polar from a CSV file', () => {
     });
   });
 
-  it('that does not cover the working angles is told how far it goes', async () => {
-    expect(await messagesOf(read(polar([-5, 0, 10, 15])))).toEqual([
-      expect.stringMatching(
-        /^turbines\/skerry-3.6-130.yaml:\d+:9: the polar covers -5 to 15 deg; it must cover at least -10 to 20 deg$/,
-      ),
-    ]);
+  it.each([
+    ['-5 to 20', [-5, 0, 10, 20]],
+    ['-10 to 15', [-10, 0, 10, 15]],
+  ])('that covers %s deg only, less than the working angles, is told so', async (covered, angles) => {
+    const [message = '', ...others] = await messagesOf(read(polar(angles)));
+    expect(message).toMatch(/^turbines\/skerry-3.6-130.yaml:\d+:9: /);
+    expect(message).toContain(`the polar covers ${covered} deg; it must cover at least -10 to 20 deg`);
+    expect(others).toEqual([]);
   });
 
   it('whose angle falls back is told the row', async () => {
