@@ -2,9 +2,9 @@ import { describe, expect, it } from 'vitest';
 import { parse } from 'yaml';
 import { InputError } from '../../scenarios/input-error.ts';
 import { readScenario } from '../../scenarios/load.ts';
-import { CONTROLLER, memoryFiles, PROTECTION, shippedText, TURBINE } from './memory-files.ts';
+import { CONTROLLER, machineText, memoryFiles, PROTECTION, TURBINE } from './memory-files.ts';
 
-const SCENARIO = '08-grid-loss-at-the-crest.yaml';
+const SCENARIO = 'grid-loss-at-the-crest.yaml';
 
 /** Every path in a file's content, values and what holds them. */
 function paths(content: unknown, above = ''): string[] {
@@ -13,7 +13,7 @@ function paths(content: unknown, above = ''): string[] {
 }
 
 function pathsOf(file: string, lead: string): string[] {
-  return paths(parse(shippedText(file)), lead);
+  return paths(parse(machineText(file)), lead);
 }
 
 const all = [

@@ -1,11 +1,19 @@
 import { mkdtemp, rm, writeFile } from 'node:fs/promises';
 import { tmpdir } from 'node:os';
-import { join, resolve } from 'node:path';
+import { join } from 'node:path';
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
 import type { Controller } from '../../controllers/contract.ts';
-import { loadScenario, shippedFolder } from '../../scenarios/disk.ts';
+import { loadScenario } from '../../scenarios/disk.ts';
 import { readScenario } from '../../scenarios/load.ts';
-import { type Module, memoryFiles, messagesOf, PROTECTION, scenarioText, TURBINE } from './memory-files.ts';
+import {
+  MACHINE_FOLDER,
+  type Module,
+  memoryFiles,
+  messagesOf,
+  PROTECTION,
+  scenarioText,
+  TURBINE,
+} from './memory-files.ts';
 
 const controllerText = `galehold: controller/1
 name: My law
@@ -98,10 +106,9 @@ describe('Files on the disk', () => {
   let folder = '';
   beforeAll(async () => {
     folder = await mkdtemp(join(tmpdir(), 'galehold-'));
-    const shipped = resolve(shippedFolder());
     const text = scenarioText('controller: my.yaml', ['controller'])
-      .replace(TURBINE, join(shipped, TURBINE))
-      .replace(PROTECTION, join(shipped, PROTECTION));
+      .replace(TURBINE, join(MACHINE_FOLDER, TURBINE))
+      .replace(PROTECTION, join(MACHINE_FOLDER, PROTECTION));
     await writeFile(join(folder, 'test.yaml'), text);
     await writeFile(join(folder, 'my.yaml'), controllerText);
     await writeFile(

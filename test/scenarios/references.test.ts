@@ -1,6 +1,6 @@
 import { describe, expect, it } from 'vitest';
 import { readScenario, readTurbine } from '../../scenarios/load.ts';
-import { memoryFiles, messagesOf, scenarioText, shippedText, TURBINE } from './memory-files.ts';
+import { machineText, memoryFiles, messagesOf, scenarioText, TURBINE } from './memory-files.ts';
 
 const RPM = Math.PI / 30;
 
@@ -40,7 +40,7 @@ describe('An override on the command line', () => {
   });
 
   it('puts another file in the place of the one referred to', async () => {
-    const other = shippedText(TURBINE).replace('name: Skerry 3.6-130', 'name: Another');
+    const other = machineText(TURBINE).replace('name: Skerry 3.6-130', 'name: Another');
     expect((await read(scenarioText(), ['turbine=other.yaml'], { 'other.yaml': other })).turbine.name).toBe('Another');
   });
 
