@@ -8,7 +8,7 @@ import { CAUTION } from '../scenarios/summary.ts';
 import { makeFolder, schemaFileName, writeSchemaFiles, writingFault } from './schema-file.ts';
 
 /** The shipped scenarios that a project starts with; the files they refer to come along. */
-const STARTERS = ['operating-gust.yaml', 'grid-loss-at-the-crest.yaml'];
+const STARTERS = ['04-operating-gust.yaml', '08-grid-loss-at-the-crest.yaml'];
 
 const SCHEMA_FOLDER = 'schemas';
 

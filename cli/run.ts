@@ -33,8 +33,8 @@ export function registerRun(program: Command): void {
     .addHelpText(
       'after',
       '\nExamples:\n' +
-        '  galehold run operating-gust.yaml --view view.html\n' +
-        '  galehold run grid-loss-*.yaml --set "turbine.pitch_drive.backup.rows.0.1=5" --out results/weak-backup\n' +
+        '  galehold run 04-operating-gust.yaml --view view.html\n' +
+        '  galehold run 08-*.yaml 09-*.yaml --set "turbine.pitch_drive.backup.rows.0.1=5" --out results/weak-backup\n' +
         '\nResults on trips and stops are an engineering aid; protection settings are decided by licensed engineers.',
     )
     .action(async (files: string[], options: RunOptions) => {

@@ -10,7 +10,7 @@ export interface TorqueLawSettings {
   optimalFrom: number;
   /** Generator speed at which kω² is left for the straight line to rated torque at rated speed, rad/s. */
   optimalTo: number;
-  /** Pitch above fine pitch at which the law keeps to rated torque or power whatever the speed, rad. */
+  /** Pitch above fine pitch at which the law keeps to rated torque or power down to `optimalTo`, rad. */
   handoverPitch: number;
   /** N m and N m/s. */
   maximumTorque: number;
@@ -37,11 +37,12 @@ export function steadyTorque(settings: TorqueLawSettings, machine: Machine): (ge
 /**
  * Torque by generator speed: nothing below the cut-in speed, kω² in the middle, a straight line up to rated torque at
  * rated speed, then constant power or constant torque. While the blades stand above fine pitch the law keeps to the
- * rated branch at any speed, so that it and the pitch law do not pull against each other around rated.
+ * rated branch down to where the straight line begins, so that it and the pitch law do not pull against each other
+ * around rated.
  * @param sampleTime s
  */
 export function torqueCurve(settings: TorqueLawSettings, machine: Machine, sampleTime: number): Law {
-  const { aboveRated, handoverPitch, maximumTorque, rateLimit, cutInSpeed } = settings;
+  const { aboveRated, handoverPitch, maximumTorque, rateLimit, cutInSpeed, optimalTo } = settings;
   const curve = steadyTorque(settings, machine);
   const largestStep = rateLimit * sampleTime;
   const handover = machine.finePitch + handoverPitch;
@@ -56,7 +57,7 @@ export function torqueCurve(settings: TorqueLawSettings, machine: Machine, sampl
     step(measured, memory, at, demands) {
       const speed = measured.generatorSpeed;
       const onRatedBranch =
-        speed >= machine.ratedGeneratorSpeed || (measured.pitch[0] > handover && speed > cutInSpeed);
+        speed >= machine.ratedGeneratorSpeed || (measured.pitch[0] > handover && speed > optimalTo);
       // A lowered power set-point lowers the rated branch and caps the rest.
       const ceiling = measured.powerSetpoint / machine.generatorEfficiency;
       const ratedBranch =

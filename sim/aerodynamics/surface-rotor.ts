@@ -1,4 +1,4 @@
-import type { Rotor } from '../rotor.ts';
+import type { Rotor, RotorLoads } from '../rotor.ts';
 import type { Turbine } from '../turbine.ts';
 import { bladeOf } from './blade.ts';
 import { CoefficientSurface, type SurfaceData, surfaceOfBlade, surfaceOfTables } from './coefficient-surface.ts';
@@ -17,16 +17,34 @@ export function surfaceOf(turbine: Turbine, data: SurfaceData = surfaceDataOf(tu
 }
 
 /**
- * The fast rotor: rotor-effective wind less the tower top's motion, and the mean of the blades' pitch. It keeps no state.
+ * The fast rotor: rotor-effective wind less the tower top's motion. Each blade carries its share of what a rotor with
+ * all blades at its angle would: with one angle for all this is the surface itself, and a stuck blade keeps on driving
+ * while the others brake, which a mean of the angles would hide. It keeps no state.
  * Both `loads` and `steadyLoads` throw SurfaceRangeError outside the surface.
  */
 export function surfaceRotor(surface: CoefficientSurface): Rotor {
+  const share = { torque: 0, thrust: 0 };
+
+  function addBlade(wind: number, rotorSpeed: number, pitch: number, bladeCount: number, out: RotorLoads): void {
+    surface.torqueAndThrust(wind, rotorSpeed, pitch, share);
+    out.torque += share.torque / bladeCount;
+    out.thrust += share.thrust / bladeCount;
+  }
+
   return {
     stateCount: 0,
     loads(t, wind, rotorSpeed, towerVelocity, x, pitchAt, out) {
-      let pitch = 0;
-      for (let blade = 0; blade < pitchAt.length; blade++) pitch += x[pitchAt[blade]];
-      surface.torqueAndThrust(wind.rotorMean(t) - towerVelocity, rotorSpeed, pitch / pitchAt.length, out);
+      const relativeWind = wind.rotorMean(t) - towerVelocity;
+      const first = x[pitchAt[0]];
+      let alike = true;
+      for (let b = 1; b < pitchAt.length; b++) alike = alike && x[pitchAt[b]] === first;
+      if (alike) {
+        surface.torqueAndThrust(relativeWind, rotorSpeed, first, out);
+        return;
+      }
+      out.torque = 0;
+      out.thrust = 0;
+      for (let b = 0; b < pitchAt.length; b++) addBlade(relativeWind, rotorSpeed, x[pitchAt[b]], pitchAt.length, out);
     },
     steadyLoads(windSpeed, rotorSpeed, pitch, out) {
       surface.torqueAndThrust(windSpeed, rotorSpeed, pitch, out);
