@@ -18,9 +18,18 @@ export function registerView(program: Command): void {
     .action(async (folders: string[], options: { out: string; title?: string }) => {
       const { readStoredResult } = await import('../scenarios/stored-result.ts');
       const runs = await Promise.all(folders.map(readStoredResult));
+      nameApart(runs, folders);
       for (const run of runs) for (const sentence of run.missing ?? []) console.error(`${run.name}: ${sentence}`);
       console.log(await writePage(options.out, runs, options.title));
     });
+}
+
+/** Gives runs whose folders have the same name the paths that were asked for instead. */
+function nameApart(runs: readonly ViewedRun[], folders: readonly string[]): void {
+  const names = runs.map(({ name }) => name);
+  runs.forEach((run, index) => {
+    if (names.indexOf(run.name) !== names.lastIndexOf(run.name)) run.name = folders[index] ?? run.name;
+  });
 }
 
 /**

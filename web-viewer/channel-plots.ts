@@ -66,22 +66,23 @@ export function absentPlots(run: Run): string[] {
 
 const BLADE_SYMBOLS: readonly LineSymbol[] = ['circle', 'triangle-up', 'square'];
 
-/** One line a channel; blades that move as one share a line. */
+/** One line for each channel; blades that move as one share theirs. */
 function runLines(run: Run, { channels, unit }: ChannelPlot, units: DisplayUnits): PlotLine[] {
-  const recorded = channels.flatMap((name, index) => {
+  const groups: { values: Float32Array; blades: number[] }[] = [];
+  channels.forEach((name, index) => {
     const values = run.columns.get(name);
-    return values ? [{ values, index }] : [];
+    if (!values) return;
+    const alike = groups.find((group) => !differ(values, group.values));
+    if (alike) alike.blades.push(index + 1);
+    else groups.push({ values, blades: [index + 1] });
   });
-  const [first] = recorded;
-  if (!first) return [];
-  const distinct = recorded.some(({ values }) => differ(values, first.values)) ? recorded : [first];
-  return distinct.map(({ values, index }) => ({
-    label: distinct.length > 1 ? `blade ${index + 1}` : '',
+  return groups.map(({ values, blades }, index) => ({
+    label: groups.length > 1 ? `${blades.length > 1 ? 'blades' : 'blade'} ${blades.join(', ')}` : '',
     owner: run.name,
     style: run.style,
     x: run.time,
     y: Float64Array.from(values, (value) => units.value(value, unit)),
-    ...(distinct.length > 1 ? { symbol: BLADE_SYMBOLS[index] } : {}),
+    ...(groups.length > 1 ? { symbol: BLADE_SYMBOLS[index] } : {}),
   }));
 }
 

@@ -16,8 +16,8 @@ const GROUP_TITLES: Readonly<Record<Metric['group'], string>> = {
   account: 'Account',
 };
 
-/** The runs at a glance, a row each. */
-export function overviewTable(runs: readonly Run[], units: DisplayUnits): HTMLElement {
+/** The runs at a glance, a row each; the name shows its run alone in the plots. */
+export function overviewTable(runs: readonly Run[], units: DisplayUnits, showAlone: (run: Run) => void): HTMLElement {
   const shown = (run: Run, metric: string, text: (value: number) => string) => {
     const value = metricValue(run.summary, metric);
     return value === undefined ? '–' : text(value);
@@ -45,8 +45,15 @@ export function overviewTable(runs: readonly Run[], units: DisplayUnits): HTMLEl
         {},
         ...runs.map((run) => {
           const guard = firstGuard(run.summary);
+          const nameButton = element(
+            'button',
+            { type: 'button', class: 'run-name', title: 'show this run alone in the plots' },
+            lineSample(run.style),
+            element('bdi', {}, run.name),
+          );
+          nameButton.addEventListener('click', () => showAlone(run));
           return tableRow(
-            element('span', { class: 'run-name' }, lineSample(run.style), element('bdi', {}, run.name)),
+            nameButton,
             verdictBadge(run),
             guard ? `${guard.text}, ${numberText(guard.time)}\u00a0s` : 'none',
             shown(run, 'rotor_speed_peak_rpm', (value) => units.text(value, 'rpm')),

@@ -139,6 +139,17 @@ export function numberText(value: number | null | undefined): string {
   return text.replace(/^-0$/, '0').replace(/^-/, '−');
 }
 
+/** A value with the decimals that four digits of `largest` have: what is small beside it reads as nought. */
+export function numberTextBeside(value: number, largest: number): string {
+  if (!Number.isFinite(value)) return '–';
+  if (!(largest > 0)) return numberText(value);
+  const decimals = Math.min(6, Math.max(0, 3 - Math.floor(Math.log10(largest))));
+  return value
+    .toFixed(decimals)
+    .replace(/^-(?=0\.?0*$)/, '')
+    .replace(/^-/, '−');
+}
+
 function withUnit(text: string, unit: string): string {
   return unit === '1' || unit === '' ? text : `${text}\u00a0${unit}`;
 }

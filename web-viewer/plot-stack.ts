@@ -1,6 +1,6 @@
 /** Plots stacked over one shared axis, with one cursor through all of them and their values at the cursor beside their titles. */
 import Plotly, { type Dash, type Data, type Layout, type Shape } from 'plotly.js-dist';
-import { numberText } from './display-unit.ts';
+import { numberText, numberTextBeside } from './display-unit.ts';
 import { element } from './element.ts';
 import { type LineSymbol, lineSample } from './line-sample.ts';
 import type { LineStyle, Theme } from './palette.ts';
@@ -84,11 +84,14 @@ export interface PlotStack {
 const NARROW = 640;
 /** Room to the right of the plots, px: for half a tick label, and at most for the levels' labels. */
 const LEAST_RIGHT = 12;
-const MOST_RIGHT = 190;
+const MOST_RIGHT = 220;
+const MOST_RIGHT_SHARE = 0.22;
 const LEVEL_LABEL_FONT = '700 11px system-ui, sans-serif';
 const AXIS_HEIGHT = 24;
 const TOP = 6;
-/** Plots per symbol trace: enough to tell lines apart, few enough not to hide them. */
+/** Of a plot's height beside its values' size: what changes less looks steady. */
+const LEAST_SPAN = 0.02;
+/** Symbols on a line: enough to tell lines apart, few enough not to hide them. */
 const SYMBOLS_PER_LINE = 12;
 const LEVEL_LABEL_HEIGHT = 14;
 
@@ -96,6 +99,8 @@ interface Slot {
   plot: Plot;
   host: HTMLElement;
   values: HTMLElement[];
+  /** The largest size of any value of the plot. */
+  largest: number;
   area: HTMLElement;
   labels: HTMLElement;
 }
@@ -120,7 +125,9 @@ export function createPlotStack(options: StackOptions): PlotStack {
     const total = paperWidth ?? host.clientWidth;
     const narrow = total < NARROW;
     const left = narrow ? 46 : 64;
-    const right = narrow ? LEAST_RIGHT : Math.min(MOST_RIGHT, LEAST_RIGHT + widestLabel(content.plots));
+    const right = narrow
+      ? LEAST_RIGHT
+      : Math.min(MOST_RIGHT, MOST_RIGHT_SHARE * total, LEAST_RIGHT + widestLabel(content.plots));
     return { total, left, width: Math.max(80, total - left - right), range, narrow, theme };
   }
 
@@ -138,10 +145,10 @@ export function createPlotStack(options: StackOptions): PlotStack {
     const inside = cursor >= range[0] && cursor <= range[1];
     cursorLine.hidden = !inside;
     if (inside) cursorLine.style.left = `${toPixel(where, cursor)}px`;
-    for (const { plot, values } of slots) {
+    for (const { plot, values, largest } of slots) {
       plot.lines.forEach((line, index) => {
         const value = values[index];
-        if (value) value.textContent = numberText(valueAt(line.x, line.y, cursor));
+        if (value) value.textContent = numberTextBeside(valueAt(line.x, line.y, cursor), largest);
       });
     }
   }
@@ -219,7 +226,8 @@ function furnishSlot(plot: Plot, before: Slot | undefined, last: boolean, axis: 
     element('div', { class: 'plot-body' }, area, labels),
     last ? element('p', { class: 'axis-title' }, axis) : undefined,
   );
-  return { plot, host, values, area, labels };
+  const largest = Math.max(...bounds(plot.lines.map(({ y }) => y)).map(Math.abs));
+  return { plot, host, values, largest, area, labels };
 }
 
 function describe({ title, unit, lines, levels }: Plot): string {
@@ -308,7 +316,11 @@ function levelShape({ value, severity }: PlotLevel, theme: Theme): Partial<Shape
 }
 
 /** The labels of levels beside the plot, moved apart where levels lie close; a key under it where there is no room beside. */
-function levelLabels({ levels, height }: Plot, [low, high]: Range, { left, width, narrow }: Frame): HTMLElement[] {
+function levelLabels(
+  { levels, height }: Plot,
+  [low, high]: Range,
+  { total, left, width, narrow }: Frame,
+): HTMLElement[] {
   const inside = levels.filter(({ value }) => value >= low && value <= high).sort((a, b) => a.value - b.value);
   let ceiling = Number.POSITIVE_INFINITY;
   return inside.map(({ text, value, severity }) => {
@@ -319,7 +331,7 @@ function levelLabels({ levels, height }: Plot, [low, high]: Range, { left, width
     ceiling = Math.min(natural, ceiling - LEVEL_LABEL_HEIGHT);
     label.style.top = `${ceiling}px`;
     label.style.left = `${left + width + 6}px`;
-    label.style.maxWidth = `${MOST_RIGHT - 6}px`;
+    label.style.maxWidth = `${total - left - width - 6}px`;
     return label;
   });
 }
@@ -342,8 +354,10 @@ function heightRange({ lines, levels }: Plot, window: Range | undefined): Range 
   });
   const [low, high] = bounds([...parts, window ? [] : levels.map((level) => level.value)]);
   if (low > high) return [0, 1];
-  const span = high - low || Math.abs(high) * 0.1 || 1;
-  return [low - 0.06 * span, high + 0.06 * span];
+  const size = Math.max(Math.abs(low), Math.abs(high));
+  const span = Math.max(high - low, window ? 0 : LEAST_SPAN * size) || 0.1 * size || 1;
+  const middle = (low + high) / 2;
+  return [middle - 0.56 * span, middle + 0.56 * span];
 }
 
 function bounds(parts: readonly ArrayLike<number>[]): Range {

@@ -18,12 +18,20 @@ export interface Run {
   shown: boolean;
 }
 
+/** More runs than these do not start on top of each other, but with the first that tripped. */
+const MOST_OVERLAID = 4;
+
 export function openRuns(data: Extract<PageData, { kind: 'runs' }>): Run[] {
-  return data.runs.map(({ name, summary, columns: packed, missing }, index) => {
+  const runs = data.runs.map(({ name, summary, columns: packed, missing }, index) => {
     const columns = unpackColumns(packed);
     const time = columns.get('time_s') ?? new Float32Array();
     return { name, summary, time, columns, missing, style: lineStyle(index), shown: true };
   });
+  if (runs.length > MOST_OVERLAID) {
+    const first = runs.find(({ summary }) => summary.events.some(({ kind }) => kind === 'guard')) ?? runs[0];
+    for (const run of runs) run.shown = run === first;
+  }
+  return runs;
 }
 
 /** The value at `at` on the line drawn through the samples; NaN outside them and beside gaps. */

@@ -5,12 +5,12 @@ import { metricTable, overviewTable } from './comparison.ts';
 import { DisplayUnits, UNIT_GROUPS } from './display-unit.ts';
 import { drawing, element } from './element.ts';
 import { drawStrip, eventBadge, KIND_WORDS } from './event-strip.ts';
-import { lineSample } from './line-sample.ts';
 import { followMedium, screenTheme } from './paper.ts';
 import { createPlotStack, type PlotStack, type Range } from './plot-stack.ts';
 import { provenanceFold } from './provenance.ts';
 import { openRuns, peakTime, type Run } from './run.ts';
 import { runCard } from './run-card.ts';
+import { createRunSwitches } from './run-switches.ts';
 import { firstGuard } from './story.ts';
 import { createTimeBar } from './time-bar.ts';
 
@@ -22,7 +22,7 @@ export function showRuns(host: HTMLElement, data: Extract<PageData, { kind: 'run
   const units = new DisplayUnits();
   const further = furtherChannels(runs);
   const added = new Set<string>();
-  let told = runs[0];
+  let told = runs.find((run) => run.shown);
 
   const verdicts = element('section', { id: 'verdicts', 'aria-labelledby': 'verdicts-title' });
   const changes = element('section', { id: 'changes', 'aria-labelledby': 'changes-title' });
@@ -56,7 +56,8 @@ export function showRuns(host: HTMLElement, data: Extract<PageData, { kind: 'run
   function showPlots(): void {
     const shown = shownRuns();
     if (!told?.shown) told = shown[0];
-    const extent = extentOf(runs);
+    const extent = extentOf(shown.length > 0 ? shown : runs);
+    switches.show(told);
     timeBar.showExtent(extent);
     stack.show({
       plots: channelPlots(
@@ -93,7 +94,7 @@ export function showRuns(host: HTMLElement, data: Extract<PageData, { kind: 'run
     const cards = runs.map((run) => runCard(run, units));
     verdicts.replaceChildren(
       element('h2', { id: 'verdicts-title' }, several ? 'Did they hold?' : 'Did it hold?'),
-      ...(several ? [overviewTable(runs, units)] : []),
+      ...(several ? [overviewTable(runs, units, showAlone)] : []),
       runs.length > OPEN_CARDS
         ? element(
             'details',
@@ -110,23 +111,30 @@ export function showRuns(host: HTMLElement, data: Extract<PageData, { kind: 'run
     );
   }
 
+  function tell(run: Run): void {
+    told = run;
+    showPlots();
+    moveCursor(cursorStart(run));
+  }
+
+  function showAlone(chosen: Run): void {
+    for (const run of runs) run.shown = run === chosen;
+    tell(chosen);
+    course.scrollIntoView();
+  }
+
   const eventsTitle = element('h3', {});
+  const switches = createRunSwitches(runs, { switched: showPlots, tell });
   const choices = element(
     'div',
     { class: 'choices' },
-    ...(runs.length > 1 ? [runSwitches(runs, showPlots, tellChoice)] : []),
+    ...(runs.length > 1 ? [switches.host] : []),
     unitChoices(runs, units, () => {
       showNumbers();
       showPlots();
     }),
     ...(further.length > 0 ? [furtherChoice()] : []),
   );
-
-  function tellChoice(run: Run): void {
-    told = run;
-    showPlots();
-    moveCursor(cursorStart(run));
-  }
 
   function furtherChoice(): HTMLElement {
     return element(
@@ -144,18 +152,16 @@ export function showRuns(host: HTMLElement, data: Extract<PageData, { kind: 'run
     );
   }
 
-  host.append(
-    verdicts,
-    element(
-      'section',
-      { id: 'course', 'aria-labelledby': 'course-title' },
-      element('h2', { id: 'course-title' }, 'What happened, and when?'),
-      choices,
-      timeBar.host,
-      element('div', { class: 'course' }, stack.host, element('aside', {}, eventsTitle, events)),
-    ),
-    changes,
+  const course = element(
+    'section',
+    { id: 'course', 'aria-labelledby': 'course-title' },
+    element('h2', { id: 'course-title' }, 'What happened, and when?'),
+    choices,
+    timeBar.host,
+    element('div', { class: 'course' }, stack.host, element('aside', {}, eventsTitle, events)),
   );
+
+  host.append(verdicts, course, changes);
   showNumbers();
   showPlots();
   if (told) moveCursor(cursorStart(told));
@@ -175,33 +181,6 @@ function extentOf(runs: readonly Run[]): Range {
 
 function stateText(run: Run | undefined, at: number): string {
   return run?.summary.states.findLast(({ from, to }) => at >= from && at <= to)?.state ?? '';
-}
-
-function runSwitches(runs: readonly Run[], changed: () => void, tell: (run: Run) => void): HTMLElement {
-  return element(
-    'fieldset',
-    { class: 'run-switches' },
-    element('legend', {}, 'Runs in the plots, and the one whose events are shown'),
-    ...runs.map((run, index) => {
-      const box = element('input', { type: 'checkbox', checked: true });
-      const tellButton = element('input', { type: 'radio', name: 'told', checked: index === 0 });
-      box.addEventListener('change', () => {
-        run.shown = box.checked;
-        changed();
-      });
-      tellButton.addEventListener('change', () => {
-        run.shown = true;
-        box.checked = true;
-        tell(run);
-      });
-      return element(
-        'span',
-        { class: 'run-switch', 'data-run': run.name },
-        element('label', {}, box, lineSample(run.style), element('bdi', {}, run.name)),
-        element('label', { class: 'tell' }, tellButton, 'events'),
-      );
-    }),
-  );
 }
 
 function unitChoices(runs: readonly Run[], units: DisplayUnits, changed: () => void): HTMLElement {

@@ -31,8 +31,8 @@ export function story(summary: Summary, units: DisplayUnits): string[] {
     guardSentence(summary),
     peakSentence(summary, units),
     bladeSentence(summary, units),
-    standstillSentence(summary),
     brakeSentence(summary, units),
+    standstillSentence(summary),
   ].filter((sentence) => sentence !== undefined);
 }
 
@@ -86,18 +86,19 @@ function bladeSentence(summary: Summary, units: DisplayUnits): string | undefine
   if (rate === undefined) return undefined;
   const fastest = `The blades turned at up to ${units.text(rate, 'deg/s')}`;
   const all = metricValue(summary, 'stop_to_feather_s');
-  if (all !== undefined) return `${fastest} and were feathered ${numberText(all)} s after the trip or stop order.`;
+  if (all !== undefined) return `${fastest} and were feathered ${numberText(all)} s after the trip or normal stop.`;
   const moving = metricValue(summary, 'stop_to_feather_moving_s');
   if (moving !== undefined) {
-    return `${fastest}; those not stuck were feathered ${numberText(moving)} s after the trip or stop order.`;
+    return `${fastest}; those not stuck were feathered ${numberText(moving)} s after the trip or normal stop.`;
   }
   return stopped(summary) ? `${fastest}; not all of them reached feather.` : `${fastest}.`;
 }
 
 function standstillSentence(summary: Summary): string | undefined {
   const after = metricValue(summary, 'stop_to_standstill_s');
-  if (after !== undefined) return `The rotor stood still ${numberText(after)} s after the trip or stop order.`;
-  return stopped(summary) ? 'The rotor did not come to a standstill within the run.' : undefined;
+  if (after !== undefined)
+    return `The brake held the rotor at standstill ${numberText(after)} s after the trip or normal stop.`;
+  return stopped(summary) ? 'The rotor was not held at standstill within the run.' : undefined;
 }
 
 function brakeSentence(summary: Summary, units: DisplayUnits): string | undefined {

@@ -22,6 +22,7 @@ interface PlotElement extends HTMLElement {
   layout: {
     shapes: { y0: number; x0: number; yref?: string; line: { width: number } }[];
     xaxis: { range: [number, number] };
+    yaxis: { range: [number, number] };
   };
 }
 
@@ -125,11 +126,12 @@ describe.skipIf(!browserPresent('the view of runs and of figures in a browser'))
     }
   });
 
-  test('a stuck blade gets a line of its own, told apart by a symbol and a name', async () => {
+  test('a stuck blade gets a line of its own, told apart by a symbol and a name; the others share theirs', async () => {
     await open([STUCK]);
     const shown = await lines('Pitch angle');
-    expect(shown.map(({ meta }) => meta.label)).toEqual(['blade 1', 'blade 2', 'blade 3']);
-    expectSeries(shown[2]?.y ?? [], column(STUCK, 'pitch_3_deg'));
+    expect(shown.map(({ meta }) => meta.label)).toEqual(['blades 1, 2', 'blade 3']);
+    expectSeries(shown[0]?.y ?? [], column(STUCK, 'pitch_1_deg'));
+    expectSeries(shown[1]?.y ?? [], column(STUCK, 'pitch_3_deg'));
   });
 
   test('rotor speed stands against its rated, trip and never-exceed levels', async () => {
@@ -274,13 +276,39 @@ describe.skipIf(!browserPresent('the view of runs and of figures in a browser'))
   });
 
   test('all runs can be switched off, and one back on', async () => {
-    await open([STOP]);
-    await page.close();
     await open([STOP, SLOW]);
-    for (const box of await page.locator('.run-switch input[type=checkbox]').all()) await box.uncheck();
+    await page.getByRole('button', { name: 'none' }).click();
     expect(await page.locator('.plot').count()).toBe(0);
     await page.locator('.run-switch input[type=checkbox]').first().check();
     expect(await page.locator('.plot').count()).toBe(9);
+  });
+
+  test('many runs start with the first that tripped; a name in the overview shows its run alone, on its own time', async () => {
+    const calm = { ...STOP, name: 'calm', summary: { ...STOP.summary, events: [] } };
+    const long = inventRun({ name: 'long', duration: 90 });
+    await open([calm, SLOW, STOP, STUCK, long]);
+    expect((await lines('Rotor speed')).map(({ meta }) => meta.owner)).toEqual(['half-rate']);
+    await page.locator('.overview').getByRole('button', { name: 'long' }).click();
+    expect((await lines('Rotor speed')).map(({ meta }) => meta.owner)).toEqual(['long']);
+    expect((await ranges())[0]).toEqual([0, 90]);
+    expect(await page.locator('.run-switch[data-run="long"] input[type=radio]').isChecked()).toBe(true);
+    expect(await page.locator('aside h3').textContent()).toBe('Events of long');
+    await page.getByRole('button', { name: 'all', exact: true }).click();
+    expect(await lines('Rotor speed')).toHaveLength(5);
+  });
+
+  test('a speed that hardly changes is not blown up to fill its plot', async () => {
+    const steady = STOP.columns.map(({ name, values }) => ({
+      name,
+      values:
+        name === 'brake_temperature_c' ? Float64Array.from(values, (_, index) => 15 + 1e-4 * (index % 2)) : values,
+    }));
+    await open([{ ...STOP, columns: steady }]);
+    const [low, high] = await page.evaluate(
+      () =>
+        (document.querySelector('[data-plot="Brake disc temperature"] .plot-area') as PlotElement).layout.yaxis.range,
+    );
+    expect(high - low).toBeGreaterThan(0.3);
   });
 
   test('another unit rescales plots, levels, story and tables', async () => {

@@ -1,6 +1,6 @@
 import { describe, expect, test } from 'vitest';
 import type { Summary } from '../../scenarios/summary.ts';
-import { DisplayUnits, numberText, UNIT_GROUPS } from '../../web-viewer/display-unit.ts';
+import { DisplayUnits, numberText, numberTextBeside, UNIT_GROUPS } from '../../web-viewer/display-unit.ts';
 import { story } from '../../web-viewer/story.ts';
 import { inventRun } from './invented-run.ts';
 
@@ -54,7 +54,7 @@ describe('the story of a run', () => {
       withMetrics({ stop_to_feather_s: null, stop_to_feather_moving_s: 11.5, stop_to_standstill_s: null }),
     );
     expect(text).toContain('those not stuck were feathered 11.5 s after');
-    expect(text).toContain('did not come to a standstill within the run');
+    expect(text).toContain('The rotor was not held at standstill within the run.');
   });
 
   test('does not speak of a stop where there was none', () => {
@@ -77,6 +77,18 @@ describe('the story of a run', () => {
 });
 
 describe('numbers on the page', () => {
+  test.each([
+    [13.5052, 15, '13.51'],
+    [0.002914, 15, '0.00'],
+    [-0.000303, 15, '0.00'],
+    [-4.5, 6, '−4.500'],
+    [3600.2, 3600.2, '3600'],
+    [Number.NaN, 15, '–'],
+    [0, 0, '0'],
+  ])('%s in a plot that reaches %s reads %s', (value, largest, text) => {
+    expect(numberTextBeside(value, largest)).toBe(text);
+  });
+
   test.each([
     [13.6249, '13.62'],
     [0, '0'],

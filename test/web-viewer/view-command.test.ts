@@ -47,6 +47,15 @@ describe('the view command', () => {
     expect(printed.join('\n')).toContain(out);
   });
 
+  test('keeps runs from folders of one name apart', async () => {
+    const out = join(parent, 'view.html');
+    const [before, after] = [store('before/gust'), store('after/gust')];
+    await view(before, after, '--out', out);
+    const html = await readFile(out, 'utf8');
+    expect(html).toContain(`"name":${JSON.stringify(before)}`);
+    expect(html).toContain(`"name":${JSON.stringify(after)}`);
+  });
+
   test('weighs less than 1.5 MB for a minute of one run', async () => {
     const out = join(parent, 'view.html');
     await view(store('one'), '--out', out);
@@ -62,6 +71,12 @@ describe('the view command', () => {
   test('leaves nothing behind where the page cannot be written', async () => {
     const out = join(parent, 'no-such-folder', 'view.html');
     await expect(view(store('one'), '--out', out)).rejects.toThrow(`${out}: cannot be written`);
+    expect(await readdir(parent)).toEqual(['one']);
+  });
+
+  test('leaves no draft behind where a folder has the name of the page', async () => {
+    const folder = store('one');
+    await expect(view(folder, '--out', folder)).rejects.toThrow(`${folder}: cannot be written`);
     expect(await readdir(parent)).toEqual(['one']);
   });
 });
