@@ -1,6 +1,7 @@
 import { resolve } from 'node:path';
 import type { Command } from 'commander';
 import type { ViewedRun } from '../scenarios/page.ts';
+import { CAUTION } from '../scenarios/summary.ts';
 
 /** `galehold view`: one HTML file from the results of one or several runs. */
 export function registerView(program: Command): void {
@@ -14,7 +15,10 @@ export function registerView(program: Command): void {
     .argument('<results-folder...>', 'folders that "galehold run" has written, one a run')
     .option('--out <file>', 'the page to write', 'view.html')
     .option('--title <text>', "the page's heading (default: the scenario's title)")
-    .addHelpText('after', '\nExample:\n  galehold view results/grid-loss-at-crest results/steady-12 --out view.html')
+    .addHelpText(
+      'after',
+      `\nExample:\n  galehold view results/grid-loss-at-crest results/steady-12 --out view.html\n\n${CAUTION}`,
+    )
     .action(async (folders: string[], options: { out: string; title?: string }) => {
       const { readStoredResult } = await import('../scenarios/stored-result.ts');
       const runs = await Promise.all(folders.map(readStoredResult));

@@ -127,10 +127,11 @@ export class DisplayUnits {
   }
 }
 
-/** Four significant digits, whole numbers above a thousand, a true minus; a dash where there is no number. */
+/** Four significant digits, whole numbers above a thousand, powers of ten below 0.0001, a true minus; a dash where there is no number. */
 export function numberText(value: number | null | undefined): string {
   if (value === null || value === undefined || !Number.isFinite(value)) return '–';
   const size = Math.abs(value);
+  if (size > 0 && size < 1e-4) return value.toExponential(2).replaceAll('-', '−');
   const decimals = size >= 1000 || size === 0 ? 0 : Math.min(6, 3 - Math.floor(Math.log10(size)));
   const text = value
     .toFixed(Math.max(0, decimals))
