@@ -87,6 +87,7 @@ describe('the text', () => {
     const table = lines.slice(head, head + 62);
     expect(new Set(table.map((l) => l.length)).size).toBe(1);
     expect(table[2]).toMatch(/^ +2\.1 +3 +2\.60 +14\.0 .* - +- /);
+    expect(table[61]).toMatch(/^ +64\.5 +99 .* 9\.\d\d +81\.\d\d +81\.\d\d +0\.\d{3} /);
     expect(lines[1]).toBe(
       'wind 12.00 m/s, rotor speed 12.00 rpm, pitch 8.00 deg, tip-speed ratio 6.81 (rotor speed and pitch as given)',
     );

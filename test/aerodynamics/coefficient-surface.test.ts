@@ -104,6 +104,10 @@ describe('the coefficient surface of a blade', () => {
     const tiny = 1e-9;
     const crossings: [number[], number[]][] = [
       [
+        [tiny, -1, 0.3],
+        [-tiny, -1, 0.3],
+      ],
+      [
         [12, -tiny, 1.2],
         [12, tiny, 1.2],
       ],
@@ -212,11 +216,16 @@ describe('the surface rotor', () => {
     marks: () => [],
   };
 
-  it('feels the rotor-effective wind less the tower’s motion, at the mean of the blades’ pitch', () => {
+  it('feels the rotor-effective wind less the tower’s motion, each blade with its share at its own angle', () => {
     const state = [99, 0.1, 0.2, 0.6];
     rotor.loads(3, wind, 1.2, 0.5, state, [1, 2, 3], loads);
+    const single = { torque: 0, thrust: 0 };
     const expected = { torque: 0, thrust: 0 };
-    surface.torqueAndThrust(12.5, 1.2, 0.3, expected);
+    for (const pitch of [0.1, 0.2, 0.6]) {
+      surface.torqueAndThrust(12.5, 1.2, pitch, single);
+      expected.torque += single.torque / 3;
+      expected.thrust += single.thrust / 3;
+    }
     expect(loads.torque).toBeCloseTo(expected.torque, 3);
     expect(loads.thrust).toBeCloseTo(expected.thrust, 3);
   });

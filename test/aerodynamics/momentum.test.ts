@@ -79,6 +79,17 @@ describe('the balance at one section', () => {
     }
   });
 
+  it('blows against a light wind, a above 1, on a law that leaves Buhl’s at a = 1 and tends to the fan’s', () => {
+    const section: BladeSection = { radius: 30, width: 0.1, chord: 4, twist: -0.16, airfoil: straight };
+    for (const wind of [0.5, 1.5, 2.5]) {
+      solveSection(section, blade, wind, 1.3, 0, AIR_DENSITY, NO_LOSS, flow);
+      const beyond = flow.axialInduction - 1;
+      expect(beyond).toBeGreaterThan(0.1);
+      const thrust = (3 * flow.normalForce) / (0.5 * AIR_DENSITY * wind ** 2 * 2 * Math.PI * 30);
+      expect(thrust / (2 + (20 / 3 - 4) * beyond + 4 * beyond ** 2)).toBeCloseTo(1, 6);
+    }
+  });
+
   it('is a fan in still air: thrust 2ρA times the square of the induced speed', () => {
     const section: BladeSection = { radius: 30, width: 0.1, chord: 2, twist: 0.08, airfoil: straight };
     for (const pitch of [0, -0.16]) {

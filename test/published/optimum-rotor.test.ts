@@ -75,7 +75,7 @@ function bestRotor(ratio: number, dragOverLift: number): number {
     /** Power of the section that settles at inflow angle φ and so at its design angle: more chord slows the wind more. */
     const powerAt = (phi: number): number => {
       let [narrow, wide] = [1e-6, 5];
-      for (let i = 0; i < 45; i++) {
+      for (let i = 0; i < 30; i++) {
         const chord = Math.sqrt(narrow * wide);
         solve(chord, phi);
         if (flow.inflowAngle > phi) narrow = chord;
