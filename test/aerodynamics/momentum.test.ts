@@ -39,7 +39,7 @@ describe('the balance at one section', () => {
     expect(compared).toBeGreaterThan(100);
   });
 
-  it('changes the rotor’s torque and thrust by less than 0.3 % where it departs from Ning’s above a = 0.4', () => {
+  it('changes the rotor’s torque and thrust by less than 0.03 % where it departs from Ning’s above a = 0.4', () => {
     const rotorSpeed = (8 * 10) / 65;
     let torque = 0;
     let thrust = 0;
@@ -50,8 +50,8 @@ describe('the balance at one section', () => {
       thrust += 3 * ning.normalForce * section.width;
     }
     const ours = steadyRotor(blade, 10, rotorSpeed, 0, AIR_DENSITY);
-    expect(Math.abs(ours.torque / torque - 1)).toBeLessThan(3e-3);
-    expect(Math.abs(ours.thrust / thrust - 1)).toBeLessThan(3e-3);
+    expect(Math.abs(ours.torque / torque - 1)).toBeLessThan(3e-4);
+    expect(Math.abs(ours.thrust / thrust - 1)).toBeLessThan(3e-4);
   });
 
   it('holds Glauert’s relation a(1 − a) = a′(1 + a′)λ_r² in a thin annulus without drag', () => {
