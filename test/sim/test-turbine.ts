@@ -4,7 +4,7 @@ import { stackLaws } from '../../controllers/law.ts';
 import { type ProtectionSettings, safetyChain } from '../../controllers/protection.ts';
 import { scheduledPiPitch } from '../../controllers/scheduled-pi-pitch.ts';
 import { supervisor } from '../../controllers/supervisor.ts';
-import { torqueCurve } from '../../controllers/torque-curve.ts';
+import { steadyTorque, type TorqueLawSettings, torqueCurve } from '../../controllers/torque-curve.ts';
 import { machineOf } from '../../scenarios/machine.ts';
 import { Clock, type RunSetup } from '../../sim/clock.ts';
 import type { RunEvent } from '../../sim/frame.ts';
@@ -118,7 +118,14 @@ export const MACHINE: Machine = machineOf(TURBINE);
 export const PROTECTION: ProtectionSettings = {
   sampleTime: 0.01,
   guards: [
-    { watch: 'rotor overspeed', above: 1.12 * 12 * RPM, name: 'rotor overspeed', hold: 0, reset: 'manual', stop: 'emergency' },
+    {
+      watch: 'rotor overspeed',
+      above: 1.12 * 12 * RPM,
+      name: 'rotor overspeed',
+      hold: 0,
+      reset: 'manual',
+      stop: 'emergency',
+    },
     { watch: 'grid loss', name: 'grid loss', hold: 0.2, reset: 'manual', stop: 'emergency' },
     { watch: 'manual button', name: 'button', hold: 0, reset: 'manual', stop: 'manual' },
   ],
@@ -147,6 +154,17 @@ export const PROTECTION: ProtectionSettings = {
   },
 };
 
+const TORQUE_LAW: TorqueLawSettings = {
+  optimalGain: 2.0,
+  aboveRated: 'constant power',
+  cutInSpeed: 400 * RPM,
+  optimalFrom: 650 * RPM,
+  optimalTo: 1100 * RPM,
+  handoverPitch: 1 * DEGREE,
+  maximumTorque: 34e3,
+  rateLimit: 5e4,
+};
+
 export function testController(sampleTime = 0.01): Controller {
   return stackLaws('test law', sampleTime, [
     scheduledPiPitch(
@@ -162,20 +180,7 @@ export function testController(sampleTime = 0.01): Controller {
       },
       sampleTime,
     ),
-    torqueCurve(
-      {
-        optimalGain: 2.0,
-        aboveRated: 'constant power',
-        cutInSpeed: 400 * RPM,
-        optimalFrom: 650 * RPM,
-        optimalTo: 1100 * RPM,
-        handoverPitch: 1 * DEGREE,
-        maximumTorque: 34e3,
-        rateLimit: 5e4,
-      },
-      MACHINE,
-      sampleTime,
-    ),
+    torqueCurve(TORQUE_LAW, MACHINE, sampleTime),
   ]);
 }
 
@@ -210,7 +215,11 @@ export function testRun(windSpeed: number, changes: Partial<RunSetup> = {}): Clo
     duration: 60,
     seed: 1,
     integrator: { kind: 'odex', relativeTolerance: 1e-6 },
-    initial: { steady: new Trim(turbine, rotor).at(windSpeed), state: 'power production', brakeApplied: false },
+    initial: {
+      steady: new Trim(turbine, rotor).at(windSpeed, steadyTorque(TORQUE_LAW, MACHINE)),
+      state: 'power production',
+      brakeApplied: false,
+    },
     ...changes,
   });
 }
