@@ -293,6 +293,8 @@ describe.skipIf(!browserPresent('the view of runs and of figures in a browser'))
     expect((await ranges())[0]).toEqual([0, 90]);
     expect(await page.locator('.run-switch[data-run="long"] input[type=radio]').isChecked()).toBe(true);
     expect(await page.locator('aside h3').textContent()).toBe('Events of long');
+    await page.locator('.overview').getByRole('button', { name: 'half-rate' }).click();
+    expect((await ranges())[0]).toEqual([0, 60]);
     await page.getByRole('button', { name: 'all', exact: true }).click();
     expect(await lines('Rotor speed')).toHaveLength(5);
   });
