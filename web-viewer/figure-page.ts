@@ -36,13 +36,14 @@ function axisGroups(panels: readonly PanelData[]): { label: string; panels: Pane
   return groups;
 }
 
+/** What the title says already is not said again. */
 function figurePlot({ title, yLabel, x, lines }: PanelData): Plot {
   return {
     title,
-    unit: yLabel,
+    unit: yLabel === title ? '' : yLabel,
     height: 200,
     lines: lines.map(({ label, values }, index) => ({
-      label,
+      label: label === title ? '' : label,
       owner: label,
       style: lineStyle(index),
       x: numbers(x.values),

@@ -88,6 +88,8 @@ const MOST_RIGHT = 220;
 const MOST_RIGHT_SHARE = 0.22;
 const LEVEL_LABEL_FONT = '700 11px system-ui, sans-serif';
 const AXIS_HEIGHT = 24;
+/** Presses of an arrow key from one end of the shown range to the other. */
+const KEY_STEPS = 200;
 const TOP = 6;
 /** Of a plot's height beside its values' size: what changes less looks steady. */
 const LEAST_SPAN = 0.02;
@@ -110,7 +112,14 @@ export function createPlotStack(options: StackOptions): PlotStack {
   const cursorLine = element('div', { class: 'cursor-line' });
   const selection = element('div', { class: 'selection', hidden: true });
   const slotsHost = element('div', { class: 'plots' });
-  const host = element('div', { class: 'stack' }, options.strip?.host, slotsHost, cursorLine, selection);
+  const host = element(
+    'div',
+    { class: 'stack', tabindex: 0, role: 'group', 'aria-label': 'Plots; the arrow keys move the cursor' },
+    options.strip?.host,
+    slotsHost,
+    cursorLine,
+    selection,
+  );
 
   let content: StackContent = { plots: [], extent: [0, 1], marks: [] };
   let slots: Slot[] = [];
@@ -163,6 +172,13 @@ export function createPlotStack(options: StackOptions): PlotStack {
     point: options.onCursor,
     select: zoom,
     whole: () => zoom(content.extent),
+  });
+  host.addEventListener('keydown', (event) => {
+    const direction = { ArrowLeft: -1, ArrowRight: 1 }[event.key];
+    if (direction === undefined) return;
+    event.preventDefault();
+    const step = (direction * (range[1] - range[0])) / KEY_STEPS;
+    options.onCursor(Math.min(range[1], Math.max(range[0], Number.isNaN(cursor) ? range[0] : cursor + step)));
   });
   new ResizeObserver(() => {
     if (paperWidth === undefined && host.clientWidth !== drawnWidth) draw();

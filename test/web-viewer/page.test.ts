@@ -447,16 +447,22 @@ describe.skipIf(!browserPresent('the view of runs and of figures in a browser'))
         title: 'Trim <b>',
         note: 'Invented numbers.',
         panels: [
-          { title: 'Pitch', yLabel: 'deg', x: axis, lines: [{ label: 'pitch', values: pitch }] },
+          { title: 'Pitch, deg', yLabel: 'Pitch, deg', x: axis, lines: [{ label: 'Pitch, deg', values: pitch }] },
           { title: 'Power', yLabel: 'kW', x: axis, lines: [{ label: 'electrical', values: wind.map((v) => 100 * v) }] },
         ],
       }),
     );
     expect(await page.locator('.stack').count()).toBe(1);
-    expect((await lines('Pitch'))[0]?.y).toEqual(pitch);
+    expect((await lines('Pitch, deg'))[0]?.y).toEqual(pitch);
+    expect(await page.locator('[data-plot="Pitch, deg"] .plot-head').textContent()).toMatch(/^Pitch, deg\s*–$/);
     expect((await lines('Power'))[0]?.x).toEqual(wind);
     expect(await page.locator('h1').textContent()).toBe('Trim <b>');
     expect(await page.locator('.axis-title').textContent()).toBe('Wind speed, m/s');
+    await page.locator('.stack').focus();
+    await page.keyboard.press('ArrowRight');
+    expect(await page.locator('[data-plot="Power"] output').textContent()).toBe('400');
+    await page.keyboard.press('ArrowRight');
+    expect(await page.locator('[data-plot="Power"] output').textContent()).toBe('410');
     const box = await page.locator('[data-plot="Power"] .plot-area').boundingBox();
     const [ten, twenty] = [await tickPlace('Power', '10'), await tickPlace('Power', '20')];
     await page.mouse.move((ten + twenty) / 2, (box?.y ?? 0) + 40);
