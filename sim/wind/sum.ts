@@ -1,7 +1,13 @@
 import type { WindField } from './wind.ts';
 
-/** The sum of several fields: mean wind, gusts, swings. */
+/** The sum of several fields: mean wind, gusts, swings; turned as a whole by the sum of their directions. */
 export function sumWind(parts: readonly WindField[]): WindField {
+  const sum = sumOfSpeeds(parts);
+  const directions = parts.flatMap(({ direction }) => (direction ? [direction] : []));
+  return directions.length === 0 ? sum : turned(sum, directions);
+}
+
+function sumOfSpeeds(parts: readonly WindField[]): WindField {
   const count = parts.length;
   const velocityOfPart = new Float64Array(3);
   return {
@@ -24,5 +30,28 @@ export function sumWind(parts: readonly WindField[]): WindField {
       return [...instants].sort((a, b) => a - b);
     },
     marks: () => parts.flatMap((part) => part.marks()).sort((a, b) => a.time - b.time),
+  };
+}
+
+function turned(wind: WindField, directions: readonly ((t: number) => number)[]): WindField {
+  const count = directions.length;
+  function direction(t: number): number {
+    let angle = 0;
+    for (let i = 0; i < count; i++) angle += directions[i](t);
+    return angle;
+  }
+  return {
+    ...wind,
+    direction,
+    velocity(t, y, z, out) {
+      wind.velocity(t, y, z, out);
+      const angle = direction(t);
+      const along = out[0];
+      const across = out[1];
+      out[0] = along * Math.cos(angle) - across * Math.sin(angle);
+      out[1] = along * Math.sin(angle) + across * Math.cos(angle);
+    },
+    /** Only what blows along the axis. */
+    rotorMean: (t) => wind.rotorMean(t) * Math.cos(direction(t)),
   };
 }

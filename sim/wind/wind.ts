@@ -14,6 +14,11 @@ export interface WindMark {
 export interface WindField {
   /** Wind components (u, v, w) in m/s at time `t` (s) and at (y, z) in m from the hub, written to `out`. */
   velocity(t: number, y: number, z: number, out: Float64Array): void;
+  /**
+   * How far the flow is turned out of the rotor's axis at time `t`, rad, positive towards +y; absent from a field that
+   * never turns. A part only says so: the sum of the parts turns their velocities by the sum of their directions.
+   */
+  direction?(t: number): number;
   /** Rotor-effective wind speed, m/s: what the `surface` rotor feels. */
   rotorMean(t: number): number;
   /**
