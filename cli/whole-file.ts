@@ -1,4 +1,6 @@
 import { rename, rm, writeFile } from 'node:fs/promises';
+import { dirname, resolve } from 'node:path';
+import { faultText, makeFolders } from '../scenarios/file-fault.ts';
 import { refusal } from '../scenarios/input-error.ts';
 
 /** Writes a text file whole or not at all. Throws what the file system says. */
@@ -13,11 +15,12 @@ export async function writeWholeFile(path: string, text: string): Promise<void> 
   }
 }
 
-/** Writes a text file that the user asked for, whole or not at all. Throws InputError where that fails. */
+/** Writes a text file that the user asked for, and the folders above it, whole or not at all. Throws InputError where that fails. */
 export async function writeAsked(file: string, text: string): Promise<void> {
   try {
+    makeFolders(dirname(resolve(file)));
     await writeWholeFile(file, text);
   } catch (cause) {
-    throw refusal(file, `cannot be written (${(cause as Error).message})`);
+    throw refusal(file, `cannot be written: ${faultText(cause)}`);
   }
 }

@@ -180,8 +180,9 @@ export interface Protection {
   step(t: number, signals: Readonly<ProtectionSignals>, memory: Float64Array, orders: Orders): void;
   /** Index of the guard that is latched first, -1 for none. */
   firstGuard(memory: Float64Array): number;
-  /** The reading that latched the first guard, in words, e.g. "13.46 rpm above 13.44 rpm". */
-  firstReading(memory: Float64Array): string;
+  isLatched(guard: number, memory: Float64Array): boolean;
+  /** The reading that latched a guard, in words, e.g. "13.46 rpm above 13.44 rpm". */
+  latchedBy(guard: number, memory: Float64Array): string;
   /** Names of the stop sequences. */
   readonly stops: readonly string[];
   /** Index of the stop sequence in progress, -1 for none. */

@@ -29,9 +29,9 @@ export interface ProtectionSettings {
   stops: Readonly<Record<string, StopSequence>>;
 }
 
-/** Fixed slots; then per guard since when it speaks (NaN: silent) and whether it is latched; then the stop's own. */
-const FIXED = ['first guard', 'first reading', 'active stop', 'guard of the active stop'] as const;
-const [FIRST, READING, STOP, STOP_GUARD] = FIXED.keys();
+/** Fixed slots; then per guard since when it speaks (NaN: silent), whether and by what reading it is latched; then the stop's own. */
+const FIXED = ['first guard', 'active stop', 'guard of the active stop'] as const;
+const [FIRST, STOP, STOP_GUARD] = FIXED.keys();
 
 const PARKED = OPERATING_STATES.indexOf('parked');
 
@@ -56,7 +56,8 @@ export function safetyChain(settings: ProtectionSettings, bladeCount: number): P
   const runner = stopSequenceRunner(bladeCount, settings.sampleTime);
   const speaksAt = FIXED.length;
   const latchedAt = speaksAt + guards.length;
-  const runAt = latchedAt + guards.length;
+  const readingAt = latchedAt + guards.length;
+  const runAt = readingAt + guards.length;
 
   /** Whether guard `i` latches at this sample. */
   function latches(i: number, t: number, signals: Readonly<ProtectionSignals>, memory: Float64Array): boolean {
@@ -69,14 +70,12 @@ export function safetyChain(settings: ProtectionSettings, bladeCount: number): P
     // Half a sample of slack: sample times are not exact in binary.
     if (t - memory[speaksAt + i] < guards[i].hold - 0.5 * settings.sampleTime) return false;
     memory[latchedAt + i] = 1;
+    memory[readingAt + i] = guards[i].reading(signals);
     return true;
   }
 
   function takeNote(i: number, t: number, signals: Readonly<ProtectionSignals>, memory: Float64Array): void {
-    if (memory[FIRST] < 0) {
-      memory[FIRST] = i;
-      memory[READING] = guards[i].reading(signals);
-    }
+    if (memory[FIRST] < 0) memory[FIRST] = i;
     const running = memory[STOP];
     if (running === stopOf[i] || (running >= 0 && memory[STOP_GUARD] < i)) return;
     memory[STOP] = stopOf[i];
@@ -100,6 +99,7 @@ export function safetyChain(settings: ProtectionSettings, bladeCount: number): P
       ...FIXED,
       ...guards.map((g) => `${g.name} speaks since`),
       ...guards.map((g) => `${g.name} latched`),
+      ...guards.map((g) => `${g.name} latched at`),
       ...stopSequenceMemory(bladeCount),
     ],
     guards: guards.map((g) => g.name),
@@ -119,7 +119,8 @@ export function safetyChain(settings: ProtectionSettings, bladeCount: number): P
       if (parked) resetIfAllowed(signals, memory);
     },
     firstGuard: (memory) => memory[FIRST],
-    firstReading: (memory) => (memory[FIRST] < 0 ? '' : guards[memory[FIRST]].describe(memory[READING])),
+    isLatched: (i, memory) => memory[latchedAt + i] === 1,
+    latchedBy: (i, memory) => guards[i].describe(memory[readingAt + i]),
     activeStop: (memory) => memory[STOP],
   };
 }

@@ -56,8 +56,7 @@ export function torqueCurve(settings: TorqueLawSettings, machine: Machine, sampl
     },
     step(measured, memory, at, demands) {
       const speed = measured.generatorSpeed;
-      const onRatedBranch =
-        speed >= machine.ratedGeneratorSpeed || (measured.pitch[0] > handover && speed > optimalTo);
+      const onRatedBranch = speed >= machine.ratedGeneratorSpeed || (measured.pitch[0] > handover && speed > optimalTo);
       // A lowered power set-point lowers the rated branch and caps the rest.
       const ceiling = measured.powerSetpoint / machine.generatorEfficiency;
       const ratedBranch =

@@ -5,6 +5,7 @@
 import type { z } from 'zod';
 import type { ControllerFactory, Machine } from '../controllers/contract.ts';
 import type { StopSequence } from '../controllers/stop-sequence.ts';
+import { bladeOf } from '../sim/aerodynamics/blade.ts';
 import type { ScriptedEvent } from '../sim/scripted-event.ts';
 import type { Turbine } from '../sim/turbine.ts';
 import { sumWind } from '../sim/wind/sum.ts';
@@ -71,6 +72,7 @@ export async function readScenario(files: Files, path: string, sets: readonly st
   if (!tree) throw reading.error();
 
   const turbine = await reading.part('turbine', tree, overrides, turbineFile);
+  if (turbine) reading.checkBlade(turbine.value, turbine.tree);
   const machine = turbine ? machineOf(turbine.value) : UNKNOWN_MACHINE;
   const protection = await reading.part('protection', tree, overrides, protectionFile(machine));
   const controller = await reading.part('controller', tree, overrides, controllerFile(machine));
@@ -112,6 +114,7 @@ export async function readTurbine(files: Files, path: string, sets: readonly str
   const opened = await reading.open('turbine', main, { argument: main });
   const tree = opened && (await reading.complete(opened, overrides));
   const turbine = tree && reading.check(tree, turbineFile);
+  if (turbine) reading.checkBlade(turbine, tree);
   if (!turbine || reading.hasProblems) throw reading.error();
   return turbine;
 }
@@ -211,6 +214,16 @@ class Reading {
     const result = checked(tree, schema);
     this.problems.push(...result.problems);
     return result.value;
+  }
+
+  /** Builds the blade once: what cannot be built, such as a polar that does not close, is told here. */
+  checkBlade({ rotor }: Turbine, tree: Tree): void {
+    if (rotor.aerodynamics.kind !== 'blade') return;
+    try {
+      bladeOf(rotor);
+    } catch (error) {
+      this.problems.push(problemAt(placeOf(tree, ['rotor', 'aerodynamics']), reasonOf(error)));
+    }
   }
 
   /** The file that the scenario refers to under `kind`, decoded, with its tree for messages. */

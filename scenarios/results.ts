@@ -3,6 +3,7 @@ import { randomUUID } from 'node:crypto';
 import { mkdirSync, readdirSync, readFileSync, renameSync, rmSync, statSync, writeFileSync } from 'node:fs';
 import { basename, dirname, join, resolve } from 'node:path';
 import { parquetWriteBuffer } from 'hyparquet-writer';
+import { faultText, makeFolders } from './file-fault.ts';
 import { SUMMARY_FORMAT, type Summary } from './summary.ts';
 
 export const SUMMARY_FILE = 'summary.json';
@@ -43,7 +44,7 @@ export function writeResult(folder: string, result: Result): void {
   const draft = join(dirname(place), `.${basename(place)}-${randomUUID()}`);
   try {
     refuseTakenPlace(folder, place);
-    mkdirSync(dirname(draft), { recursive: true });
+    makeFolders(dirname(draft));
     mkdirSync(draft);
     writeDurably(join(draft, SUMMARY_FILE), summaryText(result.summary));
     writeDurably(join(draft, CHANNELS_CSV_FILE), csvText(result.columns));
@@ -51,7 +52,7 @@ export function writeResult(folder: string, result: Result): void {
     moveIntoPlace(draft, place);
   } catch (cause) {
     discard(draft);
-    throw cause instanceof OutputError ? cause : new OutputError(folder, reasonOf(cause), cause);
+    throw cause instanceof OutputError ? cause : new OutputError(folder, faultText(cause), cause);
   }
 }
 
@@ -138,23 +139,4 @@ function moveIntoPlace(draft: string, place: string): void {
     renameSync(join(aside, other), join(place, other));
   }
   rmSync(aside, { recursive: true });
-}
-
-const REASONS: Readonly<Record<string, string>> = {
-  EACCES: 'no permission to write there',
-  EPERM: 'no permission to write there',
-  EROFS: 'the file system is read-only',
-  ENOSPC: 'the disk is full',
-  EDQUOT: 'the disk quota is used up',
-  ENOTDIR: 'a part of the path is a file, not a folder',
-  EEXIST: 'a part of the path is a file, not a folder',
-  // What Node says when a read-only file system lacks the folders above.
-  ENOENT: 'a folder above it does not exist and cannot be made',
-  ENAMETOOLONG: 'the name is too long',
-};
-
-function reasonOf(cause: unknown): string {
-  if (!(cause instanceof Error)) return String(cause);
-  const code = 'code' in cause ? String(cause.code) : '';
-  return REASONS[code] ?? cause.message;
 }

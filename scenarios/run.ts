@@ -1,5 +1,5 @@
 /** Runs a scenario from its data to its summary and recorded channels. Knows no disk. */
-import { OPERATING_STATES } from '../controllers/contract.ts';
+import { type Machine, OPERATING_STATES } from '../controllers/contract.ts';
 import { safetyChain } from '../controllers/protection.ts';
 import { supervisor } from '../controllers/supervisor.ts';
 import type { CoefficientSurface } from '../sim/aerodynamics/coefficient-surface.ts';
@@ -8,12 +8,14 @@ import { Clock, type RunSetup } from '../sim/clock.ts';
 import type { RunEvent } from '../sim/frame.ts';
 import { Trim } from '../sim/trim.ts';
 import { controllerOf, torqueCurveOf } from './control.ts';
+import { refusal } from './input-error.ts';
 import { createLimits } from './limits.ts';
 import { machineOf } from './machine.ts';
 import { createMetrics } from './metrics.ts';
 import { createRecorder, type Recording } from './recorder.ts';
 import type { ScenarioData } from './scenario.ts';
 import { CAUTION, type SpeedLevel, type StateSpan, SUMMARY_FORMAT, type Summary, type Verdict } from './summary.ts';
+import { requireCoverage } from './surface-need.ts';
 import { VERSION } from './version.ts';
 
 export interface RunResult {
@@ -24,12 +26,15 @@ export interface RunResult {
 /** Ticks between two reports of progress. */
 const PROGRESS_INTERVAL = 2000;
 
-/** The run that a scenario describes, ready to go. */
+/**
+ * The run that a scenario describes, ready to go.
+ * @throws InputError where the rotor's coefficients do not reach, or there is no steady state to start from
+ */
 export function setUp(scenario: ScenarioData, surface: CoefficientSurface): RunSetup {
-  const { turbine, wind, start } = scenario;
+  const { turbine, wind } = scenario;
   const machine = machineOf(turbine);
   const rotor = surfaceRotor(surface);
-  const trim = new Trim(turbine, rotor);
+  requireCoverage(scenario, surface);
   return {
     turbine,
     rotor,
@@ -41,22 +46,29 @@ export function setUp(scenario: ScenarioData, surface: CoefficientSurface): RunS
     duration: scenario.duration,
     seed: scenario.seed,
     integrator: scenario.integrator,
-    initial:
-      start.kind === 'trim'
-        ? {
-            steady: trim.at(start.wind, torqueCurveOf(scenario.controller, machine)),
-            state: 'power production',
-            brakeApplied: false,
-          }
-        : { steady: trim.parked(wind.rotorMean(0)), state: 'parked', brakeApplied: start.brake },
+    initial: initialOf(scenario, new Trim(turbine, rotor), machine),
   };
+}
+
+/** @throws InputError where there is no steady operation at the asked wind */
+function initialOf(scenario: ScenarioData, trim: Trim, machine: Machine): RunSetup['initial'] {
+  const { start, wind, controller, file } = scenario;
+  if (start.kind === 'parked') {
+    return { steady: trim.parked(wind.rotorMean(0)), state: 'parked', brakeApplied: start.brake };
+  }
+  try {
+    const steady = trim.at(start.wind, torqueCurveOf(controller, machine));
+    return { steady, state: 'power production', brakeApplied: false };
+  } catch (cause) {
+    throw refusal(file, `there is no steady state to start from: ${(cause as Error).message}`);
+  }
 }
 
 /**
  * Runs a scenario to its end.
  * @param surface the turbine's coefficient surface, where it is at hand
  * @param onProgress told the fraction done now and then
- * @throws SimulationError where the run cannot go on
+ * @throws InputError as `setUp`, SimulationError where the run cannot go on
  */
 export function runScenario(
   scenario: ScenarioData,

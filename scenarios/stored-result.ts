@@ -27,7 +27,7 @@ export async function readStoredResult(folder: string): Promise<ViewedRun> {
   return { name: basename(resolve(folder)), summary, columns, missing };
 }
 
-const verdict = z.enum(['holds', 'broken', 'no limits', 'failed']);
+const verdict = z.enum(['holds', 'broken', 'no limits']);
 
 const summarySchema = z.object({
   format: z.literal(SUMMARY_FORMAT),
@@ -41,7 +41,6 @@ const summarySchema = z.object({
     duration: z.number(),
   }),
   verdict,
-  failure: z.string().optional(),
   expected: z.object({ verdict: z.enum(['holds', 'broken']), because: z.string().optional() }),
   asExpected: z.boolean(),
   limits: z.array(

@@ -54,8 +54,8 @@ export interface SpeedLevel {
   rpm: number;
 }
 
-/** `holds`/`broken`: limits; `no limits`: nothing to judge; `failed`: the simulation stopped with an error. */
-export type Verdict = 'holds' | 'broken' | 'no limits' | 'failed';
+/** Whether all limits hold or one is broken, or that there was nothing to judge. */
+export type Verdict = 'holds' | 'broken' | 'no limits';
 
 export interface Summary {
   format: typeof SUMMARY_FORMAT;
@@ -70,8 +70,6 @@ export interface Summary {
     duration: number;
   };
   verdict: Verdict;
-  /** Why the run failed, where it did. */
-  failure?: string;
   /** What the scenario's author expects, and why where it is not `holds`. */
   expected: { verdict: 'holds' | 'broken'; because?: string };
   asExpected: boolean;

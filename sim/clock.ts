@@ -22,6 +22,7 @@ import { findRoot } from './root.ts';
 import type { Rotor } from './rotor.ts';
 import { type Action, describeAction, type ScriptedEvent } from './scripted-event.ts';
 import { Sensors } from './sensors.ts';
+import { checkSetup } from './setup-check.ts';
 import { SimulationError } from './simulation-error.ts';
 import type { Turbine } from './turbine.ts';
 import type { WindField } from './wind/wind.ts';
@@ -74,13 +75,13 @@ const PRODUCTION = OPERATING_STATES.indexOf('power production');
 /** Clock's own memory: what is announced so far, and the demands that were last put under way. */
 const MEMORY = [
   'announced state',
-  'announced guard',
   'announced stop',
   'announced brake',
   'law in charge',
   'torque demand of the law',
   'stored energy at start',
 ] as const;
+const [ANNOUNCED_STATE, ANNOUNCED_STOP, ANNOUNCED_BRAKE, IN_CHARGE, LAW_TORQUE, STORED_AT_START] = MEMORY.keys();
 
 /**
  * The sampled clock: at each tick sense, guard, supervise, control; then integrate the plant to the next tick with the
@@ -109,6 +110,7 @@ export class Clock {
   private readonly own: number;
   private readonly pitchDemandAt: number;
   private readonly eventAt: number;
+  private readonly announcedGuardAt: number;
 
   private readonly frameStream = new Subject<Frame>();
   private readonly eventStream = new Subject<RunEvent>();
@@ -145,6 +147,11 @@ export class Clock {
     const plant = new Plant(turbine, setup.rotor, setup.wind, this.tickLength);
     const slots = plant.memoryLayout;
     this.plant = plant;
+    checkSetup(plant, setup.rotor, controller, setup.integrator, [
+      controller.sampleTime,
+      supervisor.sampleTime,
+      protection.sampleTime,
+    ]);
     this.sensors = new Sensors(plant, controller.sampleTime, protection.sampleTime, setup.seed, slots);
     this.own = slots.place('clock', MEMORY);
     this.pitchDemandAt = slots.place('clock', [
@@ -155,6 +162,7 @@ export class Clock {
       'scripted event',
       setup.events.map((_, i) => `progress of event ${i + 1}`),
     );
+    this.announcedGuardAt = slots.place('announced guard', protection.guards);
     const lawAt = slots.place(controller.name, controller.memory);
     const supervisorAt = slots.place('supervisor', supervisor.memory);
     const protectionAt = slots.place('protection', protection.memory);
@@ -248,11 +256,11 @@ export class Clock {
     plant.start(steady, brakeApplied, x, memory);
     this.sensors.start(steady.rotorSpeed, steady.rotorSpeed * gearRatio, memory);
     memory.fill(steady.pitch, this.pitchDemandAt, this.pitchDemandAt + setup.turbine.rotor.bladeCount);
-    memory[this.own] = OPERATING_STATES.indexOf(state);
-    memory[this.own + 3] = brakeApplied ? 1 : 0;
-    memory[this.own + 4] = state === 'power production' ? 1 : 0;
-    memory[this.own + 5] = steady.generatorTorque;
-    memory[this.own + 6] = plant.storedEnergy(x);
+    memory[this.own + ANNOUNCED_STATE] = OPERATING_STATES.indexOf(state);
+    memory[this.own + ANNOUNCED_BRAKE] = brakeApplied ? 1 : 0;
+    memory[this.own + IN_CHARGE] = state === 'power production' ? 1 : 0;
+    memory[this.own + LAW_TORQUE] = steady.generatorTorque;
+    memory[this.own + STORED_AT_START] = plant.storedEnergy(x);
     const point = {
       generatorSpeed: steady.rotorSpeed * gearRatio,
       pitch: steady.pitch,
@@ -326,12 +334,12 @@ export class Clock {
     const { controller, turbine } = this.setup;
     if (this.tick % this.ticksPerLaw !== 0) return;
     if (inCharge === 0) {
-      this.memory[this.own + 4] = 0;
+      this.memory[this.own + IN_CHARGE] = 0;
       return;
     }
     try {
-      if (this.memory[this.own + 4] === 0) controller.start(this.presentPoint(), this.lawMemory);
-      this.memory[this.own + 4] = 1;
+      if (this.memory[this.own + IN_CHARGE] === 0) controller.start(this.presentPoint(), this.lawMemory);
+      this.memory[this.own + IN_CHARGE] = 1;
       controller.step(t, this.held.measured, this.lawMemory, this.held.demands);
     } catch (cause) {
       const reason = cause instanceof Error ? cause.message : String(cause);
@@ -368,7 +376,7 @@ export class Clock {
     } else {
       for (let b = 0; b < blades; b++) memory[pitchDemandAt + b] = demands.pitch[b];
       memory[pitchDemandAt + blades] = demands.pitchAs === 'rate' ? 1 : 0;
-      memory[this.own + 5] = this.lawTorque();
+      memory[this.own + LAW_TORQUE] = this.lawTorque();
     }
     const isRate = memory[pitchDemandAt + blades] === 1;
     for (let b = 0; b < blades; b++) plant.pitch.post(this.tick, b, memory[pitchDemandAt + b], isRate, memory);
@@ -376,7 +384,7 @@ export class Clock {
     plant.pitch.supply(plant.generator.gridConnected(memory), this.x, memory);
 
     const fraction = Math.min(protectionOrders.torqueFraction, supervisorOrders.torqueFraction);
-    status.torqueDemand = memory[this.own + 5] * fraction;
+    status.torqueDemand = memory[this.own + LAW_TORQUE] * fraction;
     plant.generator.demand(status.torqueDemand, memory);
     plant.brake.order(protectionOrders.brake || supervisorOrders.brake || (!orders && demands.brake), t, memory);
     status.state = protectionOrders.active ? protectionOrders.state : this.held.measured.state;
@@ -391,29 +399,34 @@ export class Clock {
     return speed > 0 ? Math.min(generator / (efficiency * speed), maximumTorque) : 0;
   }
 
+  /** Tells what has changed at this tick, causes before consequences. */
   private announce(t: number): void {
     const { memory, own, status, setup } = this;
-    if (status.state !== memory[own]) {
-      memory[own] = status.state;
-      this.say(t, 'state', OPERATING_STATES[status.state]);
-    }
-    if (status.activeGuard !== memory[own + 1]) {
-      memory[own + 1] = status.activeGuard;
-      if (status.activeGuard > 0) {
-        const reading = setup.protection.firstReading(this.protectionMemory);
-        this.say(t, 'guard', `${setup.protection.guards[status.activeGuard - 1]}: ${reading}`);
-      }
-    }
+    this.announceGuards(t);
     const stop = setup.protection.activeStop(this.protectionMemory);
-    if (stop + 1 !== memory[own + 2]) {
-      memory[own + 2] = stop + 1;
+    if (stop + 1 !== memory[own + ANNOUNCED_STOP]) {
+      memory[own + ANNOUNCED_STOP] = stop + 1;
       const name = setup.protection.stops[stop];
       this.say(t, 'stop', stop < 0 ? 'safety chain is reset' : `stop sequence "${name}" begins`);
     }
+    if (status.state !== memory[own + ANNOUNCED_STATE]) {
+      memory[own + ANNOUNCED_STATE] = status.state;
+      this.say(t, 'state', OPERATING_STATES[status.state]);
+    }
     const braking = this.plant.brake.ordered(memory) ? 1 : 0;
-    if (braking !== memory[own + 3]) {
-      memory[own + 3] = braking;
+    if (braking !== memory[own + ANNOUNCED_BRAKE]) {
+      memory[own + ANNOUNCED_BRAKE] = braking;
       this.say(t, 'brake', braking ? 'brake ordered on' : 'brake released');
+    }
+  }
+
+  private announceGuards(t: number): void {
+    const { protection } = this.setup;
+    for (let i = 0; i < protection.guards.length; i++) {
+      const latched = protection.isLatched(i, this.protectionMemory) ? 1 : 0;
+      if (latched === this.memory[this.announcedGuardAt + i]) continue;
+      this.memory[this.announcedGuardAt + i] = latched;
+      if (latched) this.say(t, 'guard', `${protection.guards[i]}: ${protection.latchedBy(i, this.protectionMemory)}`);
     }
   }
 
@@ -425,7 +438,7 @@ export class Clock {
     const { frame, status } = this;
     frame.tick = this.tick;
     frame.time = t;
-    this.fill(t, this.x, this.memory, this.memory[this.own + 6], status, frame.values);
+    this.fill(t, this.x, this.memory, this.memory[this.own + STORED_AT_START], status, frame.values);
   }
 
   private integrate(from: number, to: number): void {
@@ -547,7 +560,7 @@ export class Clock {
 
   /** Positive before the event's level is passed; the plant has been evaluated at `t`. */
   private crossingMargin(event: number, t: number): number {
-    this.fill(t, this.x, this.memory, this.memory[this.own + 6], this.status, this.trialValues);
+    this.fill(t, this.x, this.memory, this.memory[this.own + STORED_AT_START], this.status, this.trialValues);
     return this.marginTo(event, this.trialValues);
   }
 

@@ -15,6 +15,8 @@ export interface RotorLoads {
 
 export interface Rotor {
   readonly stateCount: number;
+  /** Whether it gives the root moments of single blades. */
+  readonly resolvesBlades: boolean;
   /**
    * Loads at time `t` (s).
    * @param rotorSpeed rad/s

@@ -7,7 +7,6 @@ export const VERDICT_WORDS: Readonly<Record<Verdict, string>> = {
   holds: '✓ Holds',
   broken: '✕ Limit broken',
   'no limits': '– No limits set',
-  failed: '! Simulation failed',
 };
 
 export function expectationWords({ asExpected, expected }: Summary): string {
@@ -36,8 +35,7 @@ export function story(summary: Summary, units: DisplayUnits): string[] {
   ].filter((sentence) => sentence !== undefined);
 }
 
-function verdictSentence({ verdict, failure, limits }: Summary, units: DisplayUnits): string {
-  if (verdict === 'failed') return `The simulation stopped with an error: ${failure ?? 'no reason is recorded'}.`;
+function verdictSentence({ verdict, limits }: Summary, units: DisplayUnits): string {
   if (verdict === 'no limits') return 'The scenario sets no limits, so there is nothing to judge.';
   if (verdict === 'holds') return limits.length === 1 ? 'Its one limit holds.' : `All ${limits.length} limits hold.`;
   const broken = limits.filter((limit) => !limit.holds);

@@ -33,6 +33,7 @@ export function surfaceRotor(surface: CoefficientSurface): Rotor {
 
   return {
     stateCount: 0,
+    resolvesBlades: false,
     loads(t, wind, rotorSpeed, towerVelocity, x, pitchAt, out) {
       const relativeWind = wind.rotorMean(t) - towerVelocity;
       const first = x[pitchAt[0]];

@@ -105,6 +105,7 @@ export function closedFormRotor(turbine: Turbine): Rotor {
   };
   return {
     stateCount: 0,
+    resolvesBlades: false,
     steadyLoads,
     loads(t, wind, rotorSpeed, towerVelocity, x, pitchAt, out) {
       const pitch = (x[pitchAt[0]] + x[pitchAt[1]] + x[pitchAt[2]]) / 3;

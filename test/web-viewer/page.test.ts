@@ -423,21 +423,6 @@ describe.skipIf(!browserPresent('the view of runs and of figures in a browser'))
     expect(await page.locator('.state-span').count()).toBe(3);
   });
 
-  test('a failed run says why', async () => {
-    await open([
-      {
-        ...STOP,
-        summary: {
-          ...STOP.summary,
-          verdict: 'failed',
-          failure: 'the drive train diverged at 31.2 s',
-          asExpected: false,
-        },
-      },
-    ]);
-    expect(await page.locator('.story').textContent()).toContain('the drive train diverged at 31.2 s');
-  });
-
   test('a figure shows its lines over its own axis, with their values at the cursor', async () => {
     const wind = [4, 8, 12, 16, 20, 24];
     const axis = { label: 'Wind speed, m/s', values: wind };
