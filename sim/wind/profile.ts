@@ -49,6 +49,7 @@ export function profiledWind(hub: WindField, profile: Profile, { hubHeight, roto
   const discMean = meanOverDisc((_y, z) => factor(hubHeight + z), rotorRadius);
   return {
     ...hub,
+    uniform: false,
     velocity(t, y, z, out) {
       hub.velocity(t, y, z, out);
       out[0] *= factor(hubHeight + z);

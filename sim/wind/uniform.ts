@@ -11,6 +11,7 @@ export interface UniformWind {
 /** A field that is the same all over the rotor and blows along its axis. */
 export function uniformWind({ speed, jumps = [], marks = [] }: UniformWind): WindField {
   return {
+    uniform: true,
     velocity(t, _y, _z, out) {
       out[0] = speed(t);
       out[1] = 0;

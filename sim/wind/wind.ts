@@ -19,6 +19,8 @@ export interface WindField {
    * never turns. A part only says so: the sum of the parts turns their velocities by the sum of their directions.
    */
   direction?(t: number): number;
+  /** Whether the wind is the same all over the rotor, so that one look serves every blade section. */
+  readonly uniform?: boolean;
   /** Rotor-effective wind speed, m/s: what the `surface` rotor feels. */
   rotorMean(t: number): number;
   /**
