@@ -28,8 +28,16 @@ export function report(error: unknown): number {
   const code = CODES[error.name];
   if (code !== undefined) {
     console.error(error.message);
+    if ('state' in error && Array.isArray(error.state)) printState(error.state);
     return code;
   }
   console.error(`galehold has a defect here; please report it with these lines:\n${error.stack ?? error.message}`);
   return EXIT.defect;
+}
+
+/** The plant's state where a simulation ended, in SI units. */
+function printState(state: readonly { name: string; value: number }[]): void {
+  if (state.length === 0) return;
+  console.error('  state there, in SI units:');
+  for (const { name, value } of state) console.error(`    ${name.padEnd(32)} ${Number(value.toPrecision(6))}`);
 }

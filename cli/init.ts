@@ -10,7 +10,10 @@ export function registerInit(program: Command): void {
         'JSON Schemas so that editors complete and check the files. The folder must be new or empty.',
     )
     .argument('<folder>', 'where to write it')
-    .addHelpText('after', '\nExample:\n  galehold init my-turbine && cd my-turbine && galehold run 04-operating-gust.yaml')
+    .addHelpText(
+      'after',
+      '\nExample:\n  galehold init my-turbine && cd my-turbine && galehold run 04-operating-gust.yaml',
+    )
     .action(async (folder: string) => {
       const { createProject } = await import('./project.ts');
       for (const path of await createProject(folder)) console.log(path);

@@ -17,7 +17,10 @@ const program = new Command('galehold')
   )
   .version(VERSION)
   .exitOverride(({ exitCode }) => process.exit(exitCode === 0 ? EXIT.asExpected : EXIT.badInput))
-  .addHelpText('after', '\nExample:\n  galehold init my-turbine && cd my-turbine && galehold run 04-operating-gust.yaml');
+  .addHelpText(
+    'after',
+    '\nExample:\n  galehold init my-turbine && cd my-turbine && galehold run 04-operating-gust.yaml',
+  );
 
 registerRun(program);
 registerTrim(program);

@@ -117,9 +117,11 @@ export class PitchDrives {
     const angle = x[this.angleAt + b];
     const demand = memory[this.slot(0, b)];
     const limit = memory[this.slot(2, b)];
-    let wanted = memory[this.slot(1, b)] === 1 ? demand : this.positionGain * (demand - angle);
-    // The end stops: no faster towards one than the position loop would come to rest on it.
-    wanted = clamp(wanted, this.positionGain * (minimum - angle), this.positionGain * (maximum - angle));
+    let wanted = this.positionGain * (demand - angle);
+    if (memory[this.slot(1, b)] === 1) {
+      // A demanded rate stops at the ends of the travel: no faster towards one than would come to rest on it.
+      wanted = clamp(demand, this.positionGain * (minimum - angle), this.positionGain * (maximum - angle));
+    }
     wanted = clamp(wanted, -limit, limit);
     return clamp(this.rateGain * (wanted - x[this.rateAt + b]), -accelerationLimit, accelerationLimit);
   }
