@@ -1,12 +1,9 @@
+import { extremeReferenceWindOf, type IecClass, normalDeviation, turbulenceScaleOf } from './iec-class.ts';
 import { gustMarks } from './mark.ts';
 import { uniformWind } from './uniform.ts';
 import type { WindField } from './wind.ts';
 
-export interface OperatingGust {
-  /** Edition of IEC 61400-1. The gust's formulas are alike in both; turbulence category A+ came with edition 4. */
-  edition: 3 | 4;
-  windClass: 'I' | 'II' | 'III' | 'S';
-  turbulence: 'A+' | 'A' | 'B' | 'C' | 'S';
+export interface OperatingGust extends IecClass {
   /** Mean wind at hub height, m/s. */
   hubWind: number;
   /** m */
@@ -14,15 +11,7 @@ export interface OperatingGust {
   hubHeight: number;
   /** s */
   start: number;
-  /** Reference wind speed V_ref of class S, m/s. */
-  referenceWind?: number;
-  /** Reference turbulence intensity I_ref at 15 m/s of category S, as a fraction. */
-  turbulenceIntensity?: number;
 }
-
-/** IEC 61400-1, table 1. */
-const REFERENCE_WIND = { I: 50, II: 42.5, III: 37.5 } as const;
-const REFERENCE_INTENSITY = { 'A+': 0.18, A: 0.16, B: 0.14, C: 0.12 } as const;
 
 /** Length of the gust, s. */
 const PERIOD = 10.5;
@@ -41,14 +30,10 @@ export interface GustSize {
  * room for a gust below the one-year extreme.
  */
 export function operatingGustSize(gust: OperatingGust): GustSize {
-  const referenceWind = referenceWindOf(gust);
-  const intensity = intensityOf(gust);
-  // σ₁ = I_ref (0.75 V_hub + 5.6)
-  const turbulenceDeviation = intensity * (0.75 * gust.hubWind + 5.6);
   // V_e50 = 1.4 V_ref and V_e1 = 0.8 V_e50 at hub height
-  const oneYearExtreme = 0.8 * 1.4 * referenceWind;
-  // Λ₁ = 0.7 z up to 60 m, 42 m above
-  const turbulenceScale = gust.hubHeight <= 60 ? 0.7 * gust.hubHeight : 42;
+  const oneYearExtreme = 0.8 * 1.4 * extremeReferenceWindOf(gust);
+  const turbulenceDeviation = normalDeviation(gust, gust.hubWind);
+  const turbulenceScale = turbulenceScaleOf(gust.hubHeight);
   // V_gust = min(1.35 (V_e1 − V_hub), 3.3 σ₁ / (1 + 0.1 D/Λ₁))
   const size = Math.min(
     1.35 * (oneYearExtreme - gust.hubWind),
@@ -83,23 +68,4 @@ export function operatingGust(gust: OperatingGust): WindField {
 
   const peak = start + PERIOD / 2;
   return uniformWind({ speed, jumps: [start, end], marks: gustMarks(start, peak, end, speed(peak)) });
-}
-
-function referenceWindOf({ windClass, referenceWind }: OperatingGust): number {
-  if (windClass !== 'S') return REFERENCE_WIND[windClass];
-  if (referenceWind === undefined) throw new RangeError('wind class S needs its own reference wind speed');
-  return referenceWind;
-}
-
-function intensityOf({ edition, turbulence, turbulenceIntensity }: OperatingGust): number {
-  if (turbulence === 'S') {
-    if (turbulenceIntensity === undefined) {
-      throw new RangeError('turbulence category S needs its own turbulence intensity');
-    }
-    return turbulenceIntensity;
-  }
-  if (turbulence === 'A+' && edition === 3) {
-    throw new RangeError('turbulence category A+ came with edition 4 of IEC 61400-1; edition 3 knows A, B, C and S');
-  }
-  return REFERENCE_INTENSITY[turbulence];
 }

@@ -26,8 +26,8 @@ function sumOfSpeeds(parts: readonly WindField[]): WindField {
       for (let i = 0; i < count; i++) mean += parts[i].rotorMean(t);
       return mean;
     },
-    breakpoints(end) {
-      const instants = new Set(parts.flatMap((part) => part.breakpoints(end)));
+    breakpoints(end, start) {
+      const instants = new Set(parts.flatMap((part) => part.breakpoints(end, start)));
       return [...instants].sort((a, b) => a - b);
     },
     marks: () => parts.flatMap((part) => part.marks()).sort((a, b) => a.time - b.time),

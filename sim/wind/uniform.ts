@@ -18,7 +18,7 @@ export function uniformWind({ speed, jumps = [], marks = [] }: UniformWind): Win
       out[2] = 0;
     },
     rotorMean: speed,
-    breakpoints: (end) => jumps.filter((instant) => instant > 0 && instant < end),
+    breakpoints: (end, start = 0) => jumps.filter((instant) => instant > start && instant < end),
     marks: () => marks,
   };
 }

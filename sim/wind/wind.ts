@@ -24,10 +24,11 @@ export interface WindField {
   /** Rotor-effective wind speed, m/s: what the `surface` rotor feels. */
   rotorMean(t: number): number;
   /**
-   * Instants in (0, end), rising, at which the field or one of its derivatives jumps; the clock ends integration
-   * intervals there. At a jump itself the field takes its new value (it is continuous from the right).
+   * Instants in (start, end), rising, at which the field or one of its derivatives jumps; the clock ends integration
+   * intervals there. At a jump itself the field takes its new value (it is continuous from the right). `start` is 0
+   * when absent.
    */
-  breakpoints(end: number): number[];
+  breakpoints(end: number, start?: number): number[];
   /** Instants worth showing to a reader, such as a gust's start, peak and end. */
   marks(): readonly WindMark[];
 }
