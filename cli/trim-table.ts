@@ -10,7 +10,7 @@ import { formatTag } from '../scenarios/schema/file-kind.ts';
 import { cachedSurface } from '../scenarios/surface-cache.ts';
 import { surfaceRotor } from '../sim/aerodynamics/surface-rotor.ts';
 import { Layout } from '../sim/layout.ts';
-import { Tower } from '../sim/tower.ts';
+import { TowerMode } from '../sim/tower.ts';
 import { Trim, type TrimPoint } from '../sim/trim.ts';
 import type { Turbine } from '../sim/turbine.ts';
 import { readPageTemplate } from './page-template.ts';
@@ -29,7 +29,7 @@ const RPM = Math.PI / 30;
 const DEGREE = Math.PI / 180;
 
 function columnsFor(turbine: Turbine): Column[] {
-  const tower = new Tower(turbine.tower, new Layout());
+  const tower = new TowerMode('tower', turbine.tower, new Layout());
   return [
     { name: 'wind_m_s', label: 'Wind speed, m/s', digits: 1, value: (p) => p.windSpeed },
     { name: 'rotor_speed_rpm', label: 'Rotor speed, rpm', digits: 2, value: (p) => p.rotorSpeed / RPM },

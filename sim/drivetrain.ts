@@ -11,6 +11,8 @@ export interface ShaftTorques {
   generator: number;
   brakeLow: number;
   brakeHigh: number;
+  /** What bending blades add to the rotor's inertia, kg m². */
+  inertiaChange: number;
   /** Results: torque in the low-speed shaft and what the gearbox passes on to the high-speed shaft, N m. */
   shaft: number;
   geared: number;
@@ -65,12 +67,13 @@ export class Drivetrain {
     const twistRate = x[this.at + 1] - x[this.at + 2] / gearRatio;
     q.shaft = stiffness * x[this.at + 3] + damping * twistRate;
     q.geared = this.throughGearbox(q.shaft);
-    q.rotorAcceleration = (q.aerodynamic - q.shaft - q.loss - q.brakeLow) / rotorInertia;
+    q.rotorAcceleration = (q.aerodynamic - q.shaft - q.loss - q.brakeLow) / (rotorInertia + q.inertiaChange);
     q.generatorAcceleration = (q.geared - q.generator - q.brakeHigh) / generatorInertia;
   }
 
   private balanceRigid(q: ShaftTorques): void {
-    const { rotorInertia, generatorInertia, gearRatio, gearEfficiency } = this.data;
+    const { generatorInertia, gearRatio, gearEfficiency } = this.data;
+    const rotorInertia = this.data.rotorInertia + q.inertiaChange;
     const drive = q.aerodynamic - q.loss - q.brakeLow;
     const load = q.generator + q.brakeHigh;
     // The gearbox's efficiency depends on the sign of the torque through it: take "driving", and turn it if wrong.

@@ -3,10 +3,11 @@ import { Drivetrain, type ShaftTorques } from './drivetrain.ts';
 import { Generator } from './generator.ts';
 import { Layout } from './layout.ts';
 import { PitchDrives } from './pitch-drive.ts';
-import type { Rotor, RotorLoads } from './rotor.ts';
-import { Tower } from './tower.ts';
+import { emptyLoads, type Rotor, type RotorCarrier, type RotorLoads, type RotorMotion, stillMotion } from './rotor.ts';
+import { TowerMode, topSlope } from './tower.ts';
 import type { Turbine } from './turbine.ts';
 import type { WindField } from './wind/wind.ts';
+import { Yaw } from './yaw.ts';
 
 /** A steady state from which the plant can start. */
 export interface SteadyState {
@@ -19,6 +20,10 @@ export interface SteadyState {
   shaftTorque: number;
   /** N */
   thrust: number;
+  /** The rotor's own states; at rest without motion of the air when absent. */
+  rotorStates?: Float64Array;
+  /** How far the wind comes off the nacelle's axis, rad, positive towards +y; 0 when absent. */
+  yawError?: number;
 }
 
 /** Running totals of the energy account, J, in this order from `Plant.accountAt`. */
@@ -33,14 +38,20 @@ export class Plant {
   readonly layout = new Layout();
   readonly memoryLayout = new Layout();
   readonly drivetrain: Drivetrain;
-  readonly tower: Tower;
+  readonly tower: TowerMode;
+  /** Absent for a tower that does not move sideways. */
+  readonly towerSideways: TowerMode | undefined;
+  readonly yaw: Yaw;
   readonly pitch: PitchDrives;
   readonly generator: Generator;
   readonly brake: Brake;
   readonly wind: WindField;
+  readonly rotorAt: number;
   readonly accountAt: number;
   /** Results of the last `derivative`. */
-  readonly loads: RotorLoads = { torque: 0, thrust: 0 };
+  readonly loads: RotorLoads;
+  readonly motion: RotorMotion = stillMotion();
+  readonly accelerations: RotorCarrier = { foreAft: 0, sideSide: 0, speed: 0 };
   readonly torques: ShaftTorques = {
     aerodynamic: 0,
     generator: 0,
@@ -49,12 +60,16 @@ export class Plant {
     shaft: 0,
     geared: 0,
     loss: 0,
+    inertiaChange: 0,
     rotorAcceleration: 0,
     generatorAcceleration: 0,
   };
   brakeTorque = 0;
-  towerAcceleration = 0;
-  private readonly rotor: Rotor;
+  /** Of the wind from the nacelle's axis, rad. */
+  yawError = 0;
+  readonly rotor: Rotor;
+  private readonly hubWind = new Float64Array(3);
+  private readonly topSlope: number;
   private readonly pitchAt: Int32Array;
   private readonly brakeOnLowSpeedShaft: boolean;
 
@@ -67,13 +82,24 @@ export class Plant {
     const { bladeCount } = turbine.rotor;
     const ratedGeneratorSpeed = turbine.ratings.rotorSpeed * turbine.drivetrain.gearRatio;
     this.drivetrain = new Drivetrain(turbine.drivetrain, layout);
-    this.tower = new Tower(turbine.tower, layout);
+    this.tower = new TowerMode('tower', turbine.tower, layout);
+    const { sideSide } = turbine.tower;
+    this.towerSideways = sideSide ? new TowerMode('tower sideways', sideSide, layout) : undefined;
     this.pitch = new PitchDrives(turbine.pitchDrive, bladeCount, tick, layout, memoryLayout);
     this.generator = new Generator(turbine.generator, ratedGeneratorSpeed, layout, memoryLayout);
     this.brake = new Brake(turbine.brake, layout, memoryLayout);
+    this.yaw = new Yaw(turbine.yawDrive, layout, memoryLayout);
+    this.rotorAt = layout.place('rotor', rotor.stateNames);
     this.accountAt = layout.place('account', ACCOUNT);
     this.pitchAt = Int32Array.from({ length: bladeCount }, (_, b) => this.pitch.angleAt + b);
     this.brakeOnLowSpeedShaft = turbine.brake.side === 'low-speed shaft';
+    this.loads = emptyLoads(bladeCount);
+    this.topSlope = topSlope(turbine.rotor.hubHeight);
+  }
+
+  /** Fore-aft, m/s². */
+  get towerAcceleration(): number {
+    return this.accelerations.foreAft;
   }
 
   /** Fills state and memory for a steady start. */
@@ -84,6 +110,12 @@ export class Plant {
     x[d + 2] = state.rotorSpeed * gearRatio;
     x[d + 3] = kind === 'rigid' ? 0 : state.shaftTorque / stiffness;
     x[this.tower.at] = state.thrust / this.tower.stiffness;
+    const sideways = this.towerSideways;
+    // Standing shafts (a brake that holds) pass on what the steady torque in the shaft is, too.
+    if (sideways) x[sideways.at] = (-this.topSlope * state.shaftTorque) / sideways.stiffness;
+    const { yawError = 0, rotorStates } = state;
+    this.yaw.start((this.wind.direction?.(0) ?? 0) - yawError, yawError, x);
+    if (rotorStates) x.set(rotorStates, this.rotorAt);
     x.fill(state.pitch, this.pitch.angleAt, this.pitch.angleAt + this.turbine.rotor.bladeCount);
     x[this.generator.at] = state.generatorTorque;
     x[this.brake.at] = this.turbine.brake.ambient;
@@ -103,6 +135,9 @@ export class Plant {
     scale[d + 3] = 0.01;
     scale[this.tower.at] = 0.1;
     scale[this.tower.at + 1] = 0.1;
+    if (this.towerSideways) scale.fill(0.1, this.towerSideways.at, this.towerSideways.at + 2);
+    scale.fill(0.1, this.yaw.at, this.yaw.at + 2);
+    for (let i = 0; i < this.rotor.stateScales.length; i++) scale[this.rotorAt + i] = this.rotor.stateScales[i];
     scale.fill(0.1, this.pitch.angleAt, this.pitch.rateAt + this.turbine.rotor.bladeCount);
     scale[this.generator.at] = generator.maximumTorque;
     scale[this.brake.at] = 300;
@@ -116,21 +151,39 @@ export class Plant {
     const d = this.drivetrain.at;
     const rotorSpeed = x[d + 1];
     const generatorSpeed = x[d + 2];
-    const towerVelocity = x[this.tower.at + 1];
+    const { motion, accelerations, loads, tower, towerSideways } = this;
+    motion.azimuth = x[d];
+    motion.speed = rotorSpeed;
+    motion.foreAft = x[tower.at + 1];
+    motion.sideSide = towerSideways ? x[towerSideways.at + 1] : 0;
+    motion.heading = x[this.yaw.at];
 
-    this.rotor.loads(t, this.wind, rotorSpeed, towerVelocity, x, this.pitchAt, this.loads);
-    this.towerAcceleration = this.tower.acceleration(this.loads.thrust, x);
-    q.aerodynamic = this.loads.torque;
+    this.rotor.loads(t, this.wind, motion, x, this.rotorAt, this.pitchAt, dx, loads);
+    q.aerodynamic = loads.torque + loads.inertialTorque;
+    q.inertiaChange = loads.inertiaChange;
     q.generator = x[this.generator.at];
     this.balanceShafts(t, x, memory);
+    accelerations.speed = q.rotorAcceleration;
+    accelerations.foreAft = tower.acceleration(loads.thrust + loads.inertialThrust, loads.massChange, x);
+    const rollMoment = this.rollMoment();
+    const sideForce = loads.sideForce - this.topSlope * rollMoment;
+    accelerations.sideSide = towerSideways ? towerSideways.acceleration(sideForce, 0, x) : 0;
+    this.rotor.follow(accelerations, motion, x, this.rotorAt, dx, loads);
 
     dx[d] = rotorSpeed;
     dx[d + 1] = q.rotorAcceleration;
     dx[d + 2] = q.generatorAcceleration;
     dx[d + 3] =
       this.turbine.drivetrain.kind === 'rigid' ? 0 : rotorSpeed - generatorSpeed / this.turbine.drivetrain.gearRatio;
-    dx[this.tower.at] = towerVelocity;
-    dx[this.tower.at + 1] = this.towerAcceleration;
+    dx[tower.at] = motion.foreAft;
+    dx[tower.at + 1] = accelerations.foreAft;
+    if (towerSideways) {
+      dx[towerSideways.at] = motion.sideSide;
+      dx[towerSideways.at + 1] = accelerations.sideSide;
+    }
+    this.yawError = this.windDirection(t) - motion.heading;
+    dx[this.yaw.at] = this.yaw.rate(memory);
+    dx[this.yaw.at + 1] = this.yaw.vaneRate(this.yawError, x);
     for (let b = 0; b < this.pitchAt.length; b++) {
       dx[this.pitch.angleAt + b] = x[this.pitch.rateAt + b];
       dx[this.pitch.rateAt + b] = this.pitch.acceleration(b, x, memory);
@@ -140,10 +193,32 @@ export class Plant {
     const brakePower = this.brakeTorque * (this.brakeOnLowSpeedShaft ? rotorSpeed : generatorSpeed);
     dx[this.brake.at] = this.brake.heatingRate(brakePower, x);
     const a = this.accountAt;
-    dx[a] = this.loads.torque * rotorSpeed + this.loads.thrust * towerVelocity;
+    // The shafts' speeds are counted from the nacelle, whose slow roll with the sway they do not feel: the work of the
+    // drivetrain's reaction on the sway is booked with the wind's.
+    dx[a] =
+      loads.torque * rotorSpeed + loads.thrust * motion.foreAft + sideForce * motion.sideSide + loads.bendingPower;
     dx[a + 1] = q.generator * generatorSpeed;
     dx[a + 2] = brakePower;
-    dx[a + 3] = this.drivetrain.lostPower(x, q) + this.tower.damping * towerVelocity * towerVelocity;
+    dx[a + 3] =
+      this.drivetrain.lostPower(x, q) +
+      tower.lostPower(x) +
+      (towerSideways ? towerSideways.lostPower(x) : 0) +
+      loads.lostPower;
+  }
+
+  /** Torque that shafts and generator leave to the nacelle about the rotor's axis, N m: the air's less what spins up. */
+  private rollMoment(): number {
+    const q = this.torques;
+    const { rotorInertia, generatorInertia } = this.turbine.drivetrain;
+    const spinningUp =
+      (rotorInertia + q.inertiaChange) * q.rotorAcceleration + generatorInertia * q.generatorAcceleration;
+    return q.aerodynamic - spinningUp;
+  }
+
+  /** Of the wind at the hub from the field's x axis, rad. */
+  private windDirection(t: number): number {
+    this.wind.velocity(t, 0, 0, this.hubWind);
+    return Math.atan2(this.hubWind[1], this.hubWind[0]);
   }
 
   private balanceShafts(t: number, x: ArrayLike<number>, memory: Float64Array): void {
@@ -195,9 +270,15 @@ export class Plant {
     return this.brake.settle(t, this.brakedSpeed(x), this.heldTorque(x, memory), x, memory);
   }
 
-  /** Kinetic and elastic energy in shafts and tower, J. */
+  /** Kinetic and elastic energy in shafts, tower and blades, J. */
   storedEnergy(x: ArrayLike<number>): number {
-    return this.drivetrain.energy(x) + this.tower.energy(x);
+    const { motion, tower, towerSideways } = this;
+    const d = this.drivetrain.at;
+    motion.azimuth = x[d];
+    motion.speed = x[d + 1];
+    motion.foreAft = x[tower.at + 1];
+    const blades = this.rotor.storedEnergy(motion, x, this.rotorAt);
+    return this.drivetrain.energy(x) + tower.energy(x) + (towerSideways ? towerSideways.energy(x) : 0) + blades;
   }
 
   /** Work in, less work out and heat, less `stored` energy gained since the start: zero if the account closes, J. */

@@ -64,9 +64,10 @@ export class Sensors {
     out.rotorAzimuth = ((x[d] % TURN) + TURN) % TURN;
     for (let b = 0; b < out.pitch.length; b++) out.pitch[b] = x[plant.pitch.angleAt + b];
     out.windSpeed = memory[this.at + 1];
-    out.windDirection = 0;
+    out.windDirection = plant.yawError;
     out.towerAccelerationForeAft = plant.towerAcceleration;
-    out.towerAccelerationSideSide = 0;
+    out.towerAccelerationSideSide = plant.accelerations.sideSide;
+    out.flapMoment.set(plant.loads.flapMoment);
     out.electricalPower = electricalPower(plant, x);
     out.gridConnected = plant.generator.gridConnected(memory);
   }

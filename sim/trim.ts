@@ -2,7 +2,7 @@ import { Drivetrain } from './drivetrain.ts';
 import { Layout } from './layout.ts';
 import type { SteadyState } from './plant.ts';
 import { findRoot } from './root.ts';
-import type { Rotor, RotorLoads } from './rotor.ts';
+import type { Rotor } from './rotor.ts';
 import type { Turbine } from './turbine.ts';
 
 /** The steady operating point at a wind speed. */
@@ -38,7 +38,7 @@ export class Trim {
   private readonly rotor: Rotor;
   private readonly drivetrain: Drivetrain;
   private readonly ratedTorque: number;
-  private readonly loads: RotorLoads = { torque: 0, thrust: 0 };
+  private readonly loads = { torque: 0, thrust: 0 };
 
   constructor(turbine: Turbine, rotor: Rotor) {
     this.turbine = turbine;

@@ -77,12 +77,33 @@ export type RotorAerodynamics =
     }
   | { kind: 'tables'; tables: CoefficientTables };
 
+/** Mass of a blade and its first flap mode. */
+export interface BladeStructureData {
+  /** Mass per metre (kg/m) against radius from the rotor axis (m, rising); linear between, constant beyond the ends. */
+  radius: readonly number[];
+  massPerLength: readonly number[];
+  flap: {
+    /** At standstill, Hz. */
+    frequency: number;
+    /** Fraction of critical, of the structure alone. */
+    dampingRatio: number;
+    /** Deflection over that of the tip, as coefficients of s², s³, … of the relative span s (0 root, 1 tip); sum 1. */
+    shape: readonly number[];
+  };
+}
+
 export interface RotorData {
   bladeCount: number;
   /** Tip radius and hub radius from the rotor axis, m. */
   radius: number;
   hubRadius: number;
   hubHeight: number;
+  /** Nose up, and blades leaning upwind, rad; from the tower axis to the hub, m. Zero when absent. */
+  tilt?: number;
+  cone?: number;
+  overhang?: number;
+  /** Rigid blades without weight when absent. */
+  structure?: BladeStructureData;
   aerodynamics: RotorAerodynamics;
 }
 
@@ -109,6 +130,21 @@ export interface TowerData {
   frequency: number;
   /** Fraction of critical. */
   dampingRatio: number;
+  /** The first side-side mode, in the same terms; a tower without one does not move sideways. */
+  sideSide?: { modalMass: number; frequency: number; dampingRatio: number };
+  /** Outer diameter at the top and at the base, m; a tower without one throws no shadow. */
+  topDiameter?: number;
+  baseDiameter?: number;
+}
+
+/** The drive that turns the nacelle into the wind. */
+export interface YawDriveData {
+  /** rad/s */
+  rate: number;
+  /** The drive starts when the filtered vane is further off than this, rad, and stops when it comes past zero. */
+  deadBand: number;
+  /** Time constant of the vane's filter, s. */
+  vaneTimeConstant: number;
 }
 
 export interface PitchDriveData {
@@ -169,8 +205,13 @@ export interface SpeedSensorData {
   range: number;
 }
 
+/** `surface`: the rotor as a whole, fast. `blade element`: every section of every blade in time. */
+export type RotorModel = 'surface' | 'blade element';
+
 export interface Turbine {
   name: string;
+  /** What scenarios use that do not say; `surface` when absent. */
+  rotorModel?: RotorModel;
   ratings: {
     /** Electrical, W. */
     power: number;
@@ -190,6 +231,8 @@ export interface Turbine {
   rotor: RotorData;
   drivetrain: DrivetrainData;
   tower: TowerData;
+  /** A nacelle without one keeps its heading. */
+  yawDrive?: YawDriveData;
   pitchDrive: PitchDriveData;
   generator: GeneratorData;
   brake: BrakeData;

@@ -118,8 +118,13 @@ export function solveSection(
   out.tangentialForce = pressure * (lift * sin - drag * cos);
 }
 
+/** Load of an annulus per unit of dynamic pressure and width: σ = Bc/(2πr). */
+export function solidityAt(bladeCount: number, chord: number, radius: number): number {
+  return (bladeCount * chord) / (2 * Math.PI * radius);
+}
+
 /** Prandtl's factor never quite closes an annulus: a section at the very tip still passes some air. */
-const LEAST_LOSS_FACTOR = 1e-3;
+export const LEAST_LOSS_FACTOR = 1e-3;
 /**
  * Most that swirl may add to or take from the relative speed, as a share of it. Without through-flow nothing carries
  * swirl away and it would grow without bound; the bound is our own and is met only in nearly still air.
@@ -138,7 +143,7 @@ function prandtl(bladeCount: number, gap: number, reference: number, sin: number
 }
 
 /** The free stream along the axis, per unit of relative speed, for a load N = σC_n at s = sin φ. */
-function axialStream(load: number, sin: number, lossFactor: number): number {
+export function axialStream(load: number, sin: number, lossFactor: number): number {
   if (sin < 0) return -axialStream(-load, -sin, lossFactor);
   const full = 4 * lossFactor * sin * sin;
   // Momentum: N = 4F(V − s)s, up to a = 0.4.
@@ -152,6 +157,19 @@ function axialStream(load: number, sin: number, lossFactor: number): number {
   // Blowing against a wind V from behind, a = 1 + s/V: −N = 2V² + (20/3 − 4F)Vs + 4Fs².
   const beyond = linear * linear - 8 * (load + full);
   return (linear - Math.sqrt(beyond)) / 4;
+}
+
+/**
+ * Tangential induced speed per unit of relative speed: σC_t = 4F · mass flow · swirl.
+ * @param normal σC_n, `tangential` σC_t, `sin` of the inflow angle, `axial` what `axialStream` gives for them
+ */
+export function swirlSpeed(normal: number, tangential: number, sin: number, lossFactor: number, axial: number): number {
+  const full = 4 * lossFactor * sin * sin;
+  const magnitude = normal * Math.sign(sin);
+  const momentumHolds = magnitude >= -full && magnitude <= (2 / 3) * full;
+  const carried = momentumHolds ? 4 * lossFactor * Math.abs(sin) : normal / (axial - sin);
+  const swirl = tangential === 0 ? 0 : tangential / carried;
+  return Math.max(-SWIRL_BOUND, Math.min(SWIRL_BOUND, swirl));
 }
 
 /** One section's balance while φ is sought; described anew for each section, so that nothing is allocated. */
@@ -176,7 +194,7 @@ class SectionBalance {
   describe(section: BladeSection, rotor: RotorOutline, pitch: number, options: MomentumOptions): void {
     this.airfoil = section.airfoil;
     this.setting = section.twist + pitch;
-    this.solidity = (rotor.bladeCount * section.chord) / (2 * Math.PI * section.radius);
+    this.solidity = solidityAt(rotor.bladeCount, section.chord, section.radius);
     this.bladeCount = rotor.bladeCount;
     this.radius = section.radius;
     this.tipGap = options.tipLoss ? rotor.radius - section.radius : Number.POSITIVE_INFINITY;
@@ -229,19 +247,8 @@ class SectionBalance {
     const hub = prandtl(this.bladeCount, this.hubGap, this.hubRadius, sin);
     this.lossFactor = Math.max(tip * hub, LEAST_LOSS_FACTOR);
     this.axial = axialStream(normal, sin, this.lossFactor);
-    this.edge = cos - (this.swirls ? this.swirl(normal, tangential, sin) : 0);
+    this.edge = cos - (this.swirls ? swirlSpeed(normal, tangential, sin, this.lossFactor, this.axial) : 0);
     return wind * this.edge - edgeSpeed * this.axial;
-  }
-
-  /** Tangential induced speed per unit of relative speed: σC_t = 4F · mass flow · swirl. */
-  private swirl(normal: number, tangential: number, sin: number): number {
-    const induced = this.axial - sin;
-    const full = 4 * this.lossFactor * sin * sin;
-    const magnitude = normal * Math.sign(sin);
-    const momentumHolds = magnitude >= -full && magnitude <= (2 / 3) * full;
-    const carried = momentumHolds ? 4 * this.lossFactor * Math.abs(sin) : normal / induced;
-    const swirl = tangential === 0 ? 0 : tangential / carried;
-    return Math.max(-SWIRL_BOUND, Math.min(SWIRL_BOUND, swirl));
   }
 
   /** Chandrupatla, Advances in Engineering Software 28, 1997: inverse quadratic steps where they are safe, else halving. */

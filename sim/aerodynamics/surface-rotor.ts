@@ -1,5 +1,6 @@
-import type { Rotor, RotorLoads } from '../rotor.ts';
+import { RIGID_BLADES, type Rotor, type RotorLoads } from '../rotor.ts';
 import type { Turbine } from '../turbine.ts';
+import type { WindField } from '../wind/wind.ts';
 import { bladeOf } from './blade.ts';
 import { CoefficientSurface, type SurfaceData, surfaceOfBlade, surfaceOfTables } from './coefficient-surface.ts';
 
@@ -15,6 +16,16 @@ export function surfaceDataOf(turbine: Turbine): SurfaceData {
 export function surfaceOf(turbine: Turbine, data: SurfaceData = surfaceDataOf(turbine)): CoefficientSurface {
   return new CoefficientSurface(data, turbine.rotor, turbine.airDensity);
 }
+
+/** Rotor-effective wind along the axis of a nacelle that heads elsewhere: only the direction's cosine counts. */
+function alongAxis(mean: number, heading: number, wind: WindField, t: number): number {
+  const direction = wind.direction?.(t) ?? 0;
+  const straight = Math.cos(direction);
+  return Math.abs(straight) < LEAST_COSINE ? 0 : (mean * Math.cos(direction - heading)) / straight;
+}
+
+/** The field gives what blows along its x axis; hardly anything is left of it where the wind blows across. */
+const LEAST_COSINE = 0.05;
 
 /**
  * The fast rotor: rotor-effective wind less the tower top's motion. Each blade carries its share of what a rotor with
@@ -32,10 +43,12 @@ export function surfaceRotor(surface: CoefficientSurface): Rotor {
   }
 
   return {
-    stateCount: 0,
+    ...RIGID_BLADES,
     resolvesBlades: false,
-    loads(t, wind, rotorSpeed, towerVelocity, x, pitchAt, out) {
-      const relativeWind = wind.rotorMean(t) - towerVelocity;
+    loads(t, wind, motion, x, _stateAt, pitchAt, _dx, out) {
+      const { heading, speed: rotorSpeed } = motion;
+      const along = wind.rotorMean(t);
+      const relativeWind = (heading === 0 ? along : alongAxis(along, heading, wind, t)) - motion.foreAft;
       const first = x[pitchAt[0]];
       let alike = true;
       for (let b = 1; b < pitchAt.length; b++) alike = alike && x[pitchAt[b]] === first;

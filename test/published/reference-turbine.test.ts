@@ -76,6 +76,7 @@ describe('check 4: the drivetrain of the reference turbine', () => {
       shaft: 0,
       geared: 0,
       loss: 0,
+      inertiaChange: 0,
       rotorAcceleration: 0,
       generatorAcceleration: 0,
     };

@@ -239,7 +239,7 @@ describe('A rotor that nothing holds', () => {
     const protection = safetyChain({ ...PROTECTION, guards: [] }, 3);
     const rotor: Rotor = {
       ...closedFormRotor(TURBINE),
-      loads(_t, _wind, _rotorSpeed, _towerVelocity, _x, _pitchAt, out) {
+      loads(_t, _wind, _motion, _x, _stateAt, _pitchAt, _dx, out) {
         out.torque = 8e6;
         out.thrust = 0;
       },

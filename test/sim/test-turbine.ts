@@ -8,7 +8,7 @@ import { steadyTorque, type TorqueLawSettings, torqueCurve } from '../../control
 import { machineOf } from '../../scenarios/machine.ts';
 import { Clock, type RunSetup } from '../../sim/clock.ts';
 import type { RunEvent } from '../../sim/frame.ts';
-import type { Rotor } from '../../sim/rotor.ts';
+import { RIGID_BLADES, type Rotor } from '../../sim/rotor.ts';
 import { Trim } from '../../sim/trim.ts';
 import type { Turbine } from '../../sim/turbine.ts';
 import { steadyWind } from '../../sim/wind/steady.ts';
@@ -104,12 +104,12 @@ export function closedFormRotor(turbine: Turbine): Rotor {
     out.thrust = pressure * (0.9 * Math.max(power, 0) + 0.1);
   };
   return {
-    stateCount: 0,
+    ...RIGID_BLADES,
     resolvesBlades: false,
     steadyLoads,
-    loads(t, wind, rotorSpeed, towerVelocity, x, pitchAt, out) {
+    loads(t, wind, motion, x, _stateAt, pitchAt, _dx, out) {
       const pitch = (x[pitchAt[0]] + x[pitchAt[1]] + x[pitchAt[2]]) / 3;
-      steadyLoads(wind.rotorMean(t) - towerVelocity, rotorSpeed, pitch, out);
+      steadyLoads(wind.rotorMean(t) - motion.foreAft, motion.speed, pitch, out);
     },
   };
 }

@@ -1,0 +1,517 @@
+import { BladeFlap } from '../blade-flap.ts';
+import type { Rotor, RotorCarrier, RotorLoads, RotorMotion } from '../rotor.ts';
+import type { Turbine } from '../turbine.ts';
+import type { WindField } from '../wind/wind.ts';
+import { coefficientsAt } from './airfoil.ts';
+import { type Blade, bladeOf } from './blade.ts';
+import { WAKE_SHARE, wakeTime, wakeTimeRatio } from './dynamic-wake.ts';
+import { type AttachedFlow, attachedFlow, LAG_CHORDS, laggedLift, staticAttachment } from './lift-lag.ts';
+import { lossAt } from './loss-table.ts';
+import {
+  axialStream,
+  emptyFlow,
+  FULL_MOMENTUM,
+  LEAST_LOSS_FACTOR,
+  solidityAt,
+  solveSection,
+  swirlSpeed,
+} from './momentum.ts';
+import { steadyRotor } from './steady-rotor.ts';
+import { addTowerShadow, type TowerShape } from './tower-shadow.ts';
+
+export interface BladeElementOptions {
+  /** Strips per blade. */
+  sections: number;
+  /** `dynamic`: Øye's filter. `equilibrium`: the momentum balance holds at every instant, for any motion of the blade. */
+  wake: 'dynamic' | 'equilibrium';
+  /** `lagging`: Øye's trailing-edge separation lag. */
+  sectionLift: 'steady' | 'lagging';
+}
+
+/** Twenty strips are within 0.1 % of eighty in torque and thrust over the range of operation. */
+export const BLADE_ELEMENT_DEFAULTS: BladeElementOptions = { sections: 20, wake: 'dynamic', sectionLift: 'steady' };
+
+/** States per section, each a run of one number per section of every blade. */
+const WAKE_STATES = ['axial wake, early', 'axial wake', 'tangential wake, early', 'tangential wake'] as const;
+const WAKE_SCALE = 5;
+
+/** The air at every section as the last `loads` found it; index blade · sections + section. */
+export interface SectionFlows {
+  readonly sectionCount: number;
+  /** rad */
+  readonly angleOfAttack: Float64Array;
+  /** v_n and v_t with all that moves the air and the section, and their induced parts, m/s. */
+  readonly normalSpeed: Float64Array;
+  readonly tangentialSpeed: Float64Array;
+  readonly axialInduced: Float64Array;
+  readonly tangentialInduced: Float64Array;
+}
+
+/**
+ * Each section of each blade in the time domain: the wind where the section is, the motion of shaft, tower and blade,
+ * each blade at its own pitch.
+ *
+ * The quasi-steady induced velocity of a section is what `momentum.ts` asks for the load that its present flow gives it:
+ * at rest that is the steady balance itself, so that a rotor in uniform wind settles on the steady solution. Every blade
+ * induces its own velocity, as if the others carried the same load. Turning of the nacelle is too slow to count as
+ * motion of the sections.
+ */
+export class BladeElementRotor implements Rotor {
+  readonly resolvesBlades = true;
+  readonly stateNames: string[] = [];
+  readonly stateScales: number[] = [];
+  readonly blade: Blade;
+  readonly flap: BladeFlap | undefined;
+  readonly flows: SectionFlows;
+
+  private readonly bladeCount: number;
+  private readonly sectionCount: number;
+  private readonly airDensity: number;
+  private readonly tipRadius: number;
+  private readonly hubRadius: number;
+  private readonly overhang: number;
+  private readonly tower: TowerShape | undefined;
+  private readonly sinTilt: number;
+  private readonly cosTilt: number;
+  private readonly sinCone: number;
+  private readonly cosCone: number;
+  private readonly isDynamic: boolean;
+  private readonly lags: boolean;
+
+  /** Offsets in the rotor's own states. */
+  private readonly lagAt: number;
+  private readonly flapAt: number;
+  private readonly flapRateAt: number;
+
+  /** Per section. */
+  private readonly radius: Float64Array;
+  private readonly width: Float64Array;
+  private readonly chord: Float64Array;
+  private readonly twist: Float64Array;
+  private readonly solidity: Float64Array;
+  private readonly tipExponent: Float64Array;
+  private readonly hubExponent: Float64Array;
+  private readonly timeRatio: Float64Array;
+  private readonly shape: Float64Array;
+  private readonly attached: readonly AttachedFlow[];
+
+  /** Scratch: own states and their derivatives, one blade's axes, wind. The loop below reads nothing else. */
+  private readonly own: Float64Array;
+  private readonly rate: Float64Array;
+  private readonly hubWind = new Float64Array(3);
+  private readonly sectionWind = new Float64Array(3);
+  private readonly axes = { along: new Float64Array(3), normal: new Float64Array(3), turning: new Float64Array(3) };
+  private readonly coefficients = { lift: 0, drag: 0 };
+  private readonly sums = { normal: 0, tangential: 0, normalMoment: 0, tangentialMoment: 0, modal: 0 };
+  private readonly steady = emptyFlow();
+
+  /** @throws Error when the turbine's rotor is given by tables, or its blade cannot be built */
+  constructor(turbine: Turbine, options: BladeElementOptions = BLADE_ELEMENT_DEFAULTS) {
+    const { rotor } = turbine;
+    const blade = bladeOf(rotor, options.sections);
+    const { sections } = blade;
+    this.blade = blade;
+    this.bladeCount = rotor.bladeCount;
+    this.sectionCount = sections.length;
+    this.airDensity = turbine.airDensity;
+    this.tipRadius = rotor.radius;
+    this.hubRadius = rotor.hubRadius;
+    this.overhang = rotor.overhang ?? 0;
+    this.tower = towerShapeOf(turbine);
+    this.sinTilt = Math.sin(rotor.tilt ?? 0);
+    this.cosTilt = Math.cos(rotor.tilt ?? 0);
+    this.sinCone = Math.sin(rotor.cone ?? 0);
+    this.cosCone = Math.cos(rotor.cone ?? 0);
+    this.isDynamic = options.wake === 'dynamic';
+    this.lags = options.sectionLift === 'lagging';
+    this.flap = rotor.structure ? new BladeFlap(rotor) : undefined;
+    const flap = this.flap;
+
+    const column = (value: (i: number) => number) => Float64Array.from(sections, (_, i) => value(i));
+    this.radius = column((i) => sections[i].radius);
+    this.width = column((i) => sections[i].width);
+    this.chord = column((i) => sections[i].chord);
+    this.twist = column((i) => sections[i].twist);
+    this.solidity = column((i) => solidityAt(rotor.bladeCount, sections[i].chord, sections[i].radius));
+    // Prandtl's exponents are these squared over |sin φ|.
+    const half = 0.5 * rotor.bladeCount;
+    this.tipExponent = column((i) => Math.sqrt((half * (rotor.radius - sections[i].radius)) / sections[i].radius));
+    this.hubExponent = column((i) => Math.sqrt((half * (sections[i].radius - rotor.hubRadius)) / rotor.hubRadius));
+    this.timeRatio = column((i) => wakeTimeRatio(sections[i].radius / rotor.radius));
+    this.shape = column((i) => flap?.shapeAt(sections[i].radius) ?? 0);
+    this.attached = sections.map(({ airfoil }) => attachedFlow(airfoil));
+
+    if (this.isDynamic) for (const name of WAKE_STATES) this.declare(name, WAKE_SCALE);
+    this.lagAt = this.lags ? this.declare('attached share', 1) : this.stateNames.length;
+    this.flapAt = this.stateNames.length;
+    this.flapRateAt = this.flapAt + this.bladeCount;
+    if (flap) {
+      for (const name of ['flap deflection', 'flap velocity']) {
+        for (let b = 0; b < this.bladeCount; b++) this.stateNames.push(`blade ${b + 1}: ${name}`);
+      }
+      for (let b = 0; b < 2 * this.bladeCount; b++) this.stateScales.push(1);
+    }
+    this.own = new Float64Array(this.stateNames.length);
+    this.rate = new Float64Array(this.stateNames.length);
+    const flow = () => new Float64Array(this.bladeCount * this.sectionCount);
+    this.flows = {
+      sectionCount: this.sectionCount,
+      angleOfAttack: flow(),
+      normalSpeed: flow(),
+      tangentialSpeed: flow(),
+      axialInduced: flow(),
+      tangentialInduced: flow(),
+    };
+  }
+
+  /** Declares one state per section of every blade and returns the offset of the first. */
+  private declare(name: string, scale: number): number {
+    const at = this.stateNames.length;
+    for (let b = 0; b < this.bladeCount; b++) {
+      for (let i = 0; i < this.sectionCount; i++) {
+        this.stateNames.push(`blade ${b + 1}, section ${i + 1}: ${name}`);
+        this.stateScales.push(scale);
+      }
+    }
+    return at;
+  }
+
+  /** The rotor's own states at rest in uniform wind along its axis; arguments as in `steadyLoads`. */
+  settledStates(windSpeed: number, rotorSpeed: number, pitch: number): Float64Array {
+    const states = new Float64Array(this.stateNames.length);
+    const { steady, blade, flap } = this;
+    const cells = this.bladeCount * this.sectionCount;
+    let modal = 0;
+    for (let i = 0; i < this.sectionCount; i++) {
+      const section = blade.sections[i];
+      solveSection(section, blade, windSpeed, rotorSpeed, pitch, this.airDensity, FULL_MOMENTUM, steady);
+      modal += this.shape[i] * steady.normalForce * this.width[i];
+      const axial = windSpeed - steady.normalSpeed;
+      const tangential = steady.tangentialSpeed - rotorSpeed * section.radius;
+      const { slope, zeroLiftAngle } = this.attached[i];
+      const inviscid = slope * Math.sin(steady.angleOfAttack - zeroLiftAngle);
+      for (let b = 0; b < this.bladeCount; b++) {
+        const at = b * this.sectionCount + i;
+        if (this.isDynamic) {
+          states[at] = (1 - WAKE_SHARE) * axial;
+          states[at + cells] = axial;
+          states[at + 2 * cells] = (1 - WAKE_SHARE) * tangential;
+          states[at + 3 * cells] = tangential;
+        }
+        if (this.lags) states[this.lagAt + at] = staticAttachment(steady.lift, inviscid);
+      }
+    }
+    if (flap) states.fill(flap.restingAt(modal, rotorSpeed), this.flapAt, this.flapRateAt);
+    return states;
+  }
+
+  steadyLoads(windSpeed: number, rotorSpeed: number, pitch: number, out: Pick<RotorLoads, 'torque' | 'thrust'>): void {
+    const { torque, thrust } = steadyRotor(this.blade, windSpeed, rotorSpeed, pitch, this.airDensity);
+    out.torque = torque;
+    out.thrust = thrust;
+  }
+
+  loads(
+    t: number,
+    wind: WindField,
+    motion: RotorMotion,
+    x: ArrayLike<number>,
+    stateAt: number,
+    pitchAt: ArrayLike<number>,
+    dx: { [i: number]: number },
+    out: RotorLoads,
+  ): void {
+    const { own, rate, bladeCount } = this;
+    for (let i = 0; i < own.length; i++) own[i] = x[stateAt + i];
+    clear(out);
+    wind.velocity(t, 0, 0, this.hubWind);
+    const uniform = wind.uniform === true;
+    for (let b = 0; b < bladeCount; b++) {
+      this.turnAxes(b, motion.azimuth);
+      this.sumSections(b, t, wind, uniform, motion, x[pitchAt[b]]);
+      this.addBlade(b, motion, out);
+    }
+    for (let i = 0; i < own.length; i++) dx[stateAt + i] = rate[i];
+  }
+
+  /** Axes of blade `b` in the nacelle's frame: along the blade, normal to it downwind, and where it turns. */
+  private turnAxes(b: number, azimuth: number): void {
+    const { sinTilt, cosTilt, sinCone, cosCone } = this;
+    const { along, normal, turning } = this.axes;
+    const psi = azimuth + (2 * Math.PI * b) / this.bladeCount;
+    const sin = Math.sin(psi);
+    const cos = Math.cos(psi);
+    along[0] = cosCone * cos * sinTilt - sinCone * cosTilt;
+    along[1] = -cosCone * sin;
+    along[2] = cosCone * cos * cosTilt + sinCone * sinTilt;
+    normal[0] = cosCone * cosTilt + sinCone * cos * sinTilt;
+    normal[1] = -sinCone * sin;
+    normal[2] = -cosCone * sinTilt + sinCone * cos * cosTilt;
+    turning[0] = -sin * sinTilt;
+    turning[1] = -cos;
+    turning[2] = -sin * cosTilt;
+  }
+
+  /**
+   * Flow, load and wake of every section of blade `b`, into `sums` and `rate`. The one loop that takes the time: typed
+   * arrays and plain arithmetic only.
+   */
+  private sumSections(
+    b: number,
+    t: number,
+    wind: WindField,
+    uniform: boolean,
+    motion: RotorMotion,
+    pitch: number,
+  ): void {
+    const { sectionCount, own, rate, flows, sums, coefficients, sectionWind, hubWind, isDynamic, lags, lagAt } = this;
+    const { radius, width, chord, twist, solidity, tipExponent, hubExponent, timeRatio, shape, hubRadius } = this;
+    const { normal, turning } = this.axes;
+    const { sections } = this.blade;
+    const cells = this.bladeCount * sectionCount;
+    const sinHeading = Math.sin(motion.heading);
+    const cosHeading = Math.cos(motion.heading);
+    const normalMotion = motion.foreAft * normal[0] + motion.sideSide * normal[1];
+    const turningMotion = motion.foreAft * turning[0] + motion.sideSide * turning[1];
+    const edgeRate = motion.speed * this.cosCone;
+    const flapVelocity = this.flap ? own[this.flapRateAt + b] : 0;
+    const throughRotor = hubWind[0] * cosHeading + hubWind[1] * sinHeading;
+    const sampled = !uniform || this.tower !== undefined;
+    const halfDensity = 0.5 * this.airDensity;
+    if (uniform) {
+      sectionWind[0] = throughRotor;
+      sectionWind[1] = hubWind[1] * cosHeading - hubWind[0] * sinHeading;
+      sectionWind[2] = hubWind[2];
+    }
+    let blowing = sectionWind[0] * normal[0] + sectionWind[1] * normal[1] + sectionWind[2] * normal[2];
+    let against = sectionWind[0] * turning[0] + sectionWind[1] * turning[1] + sectionWind[2] * turning[2];
+    let sumNormal = 0;
+    let sumTangential = 0;
+    let normalMoment = 0;
+    let tangentialMoment = 0;
+    let modal = 0;
+
+    for (let i = 0; i < sectionCount; i++) {
+      const at = b * sectionCount + i;
+      if (sampled) {
+        this.windAt(t, wind, uniform, radius[i], sinHeading, cosHeading, throughRotor);
+        blowing = sectionWind[0] * normal[0] + sectionWind[1] * normal[1] + sectionWind[2] * normal[2];
+        against = sectionWind[0] * turning[0] + sectionWind[1] * turning[1] + sectionWind[2] * turning[2];
+      }
+      const freeNormal = blowing - normalMotion - flapVelocity * shape[i];
+      const freeTangential = edgeRate * radius[i] + turningMotion - against;
+      let axialInduced: number;
+      let tangentialInduced: number;
+      if (isDynamic) {
+        axialInduced = own[at + cells];
+        tangentialInduced = own[at + 3 * cells];
+      } else {
+        const { steady } = this;
+        const turningRate = freeTangential / radius[i];
+        solveSection(sections[i], this.blade, freeNormal, turningRate, pitch, 1, FULL_MOMENTUM, steady);
+        axialInduced = freeNormal - steady.normalSpeed;
+        tangentialInduced = steady.tangentialSpeed - freeTangential;
+      }
+      // Velocity triangle: φ = atan2(v_n, v_t), α = φ − twist − θ.
+      const vn = freeNormal - axialInduced;
+      const vt = freeTangential + tangentialInduced;
+      const speed = Math.sqrt(vn * vn + vt * vt);
+      const alpha = Math.atan2(vn, vt) - twist[i] - pitch;
+      coefficientsAt(sections[i].airfoil, alpha, coefficients);
+      let lift = coefficients.lift;
+      const drag = coefficients.drag;
+      if (lags) {
+        const { slope, zeroLiftAngle } = this.attached[i];
+        const inviscid = slope * Math.sin(alpha - zeroLiftAngle);
+        const settled = staticAttachment(lift, inviscid);
+        const share = own[lagAt + at];
+        lift = laggedLift(lift, inviscid, settled, share);
+        rate[lagAt + at] = ((settled - share) * speed) / (LAG_CHORDS * chord[i]);
+      }
+      // ½ρW²c (C_l cos φ + C_d sin φ) and ½ρW²c (C_l sin φ − C_d cos φ).
+      const along = lift * vt + drag * vn;
+      const across = lift * vn - drag * vt;
+      const pressure = halfDensity * speed * chord[i] * width[i];
+      const normalForce = pressure * along;
+      const tangentialForce = pressure * across;
+      sumNormal += normalForce;
+      sumTangential += tangentialForce;
+      normalMoment += normalForce * radius[i];
+      tangentialMoment += tangentialForce * radius[i];
+      modal += normalForce * shape[i];
+
+      flows.angleOfAttack[at] = alpha;
+      flows.normalSpeed[at] = vn;
+      flows.tangentialSpeed[at] = vt;
+      flows.axialInduced[at] = axialInduced;
+      flows.tangentialInduced[at] = tangentialInduced;
+      if (!isDynamic) continue;
+
+      let axialSettled = 0;
+      let tangentialSettled = 0;
+      if (speed > 0) {
+        const sin = vn / speed;
+        const spread = 1 / Math.sqrt(Math.abs(sin));
+        const loss = Math.max(lossAt(tipExponent[i] * spread) * lossAt(hubExponent[i] * spread), LEAST_LOSS_FACTOR);
+        const normalLoad = (solidity[i] * along) / speed;
+        const tangentialLoad = (solidity[i] * across) / speed;
+        const stream = axialStream(normalLoad, sin, loss);
+        axialSettled = speed * (stream - sin);
+        tangentialSettled = speed * swirlSpeed(normalLoad, tangentialLoad, sin, loss, stream);
+      }
+      const early = wakeTime(this.tipRadius, throughRotor, axialInduced);
+      const late = timeRatio[i] * early;
+      rate[at] = ((1 - WAKE_SHARE) * axialSettled - own[at]) / early;
+      rate[at + cells] = (own[at] + WAKE_SHARE * axialSettled - axialInduced) / late;
+      rate[at + 2 * cells] = ((1 - WAKE_SHARE) * tangentialSettled - own[at + 2 * cells]) / early;
+      rate[at + 3 * cells] = (own[at + 2 * cells] + WAKE_SHARE * tangentialSettled - tangentialInduced) / late;
+    }
+    sums.normal = sumNormal;
+    sums.tangential = sumTangential;
+    sums.normalMoment = normalMoment - hubRadius * sumNormal;
+    sums.tangentialMoment = tangentialMoment - hubRadius * sumTangential;
+    sums.modal = modal;
+  }
+
+  /** Wind at radius `r` of the blade whose axes are set, in the nacelle's frame, into `sectionWind`. */
+  private windAt(
+    t: number,
+    wind: WindField,
+    uniform: boolean,
+    r: number,
+    sinHeading: number,
+    cosHeading: number,
+    throughRotor: number,
+  ): void {
+    const { sectionWind, hubWind, tower } = this;
+    const { along } = this.axes;
+    const x = r * along[0] - this.overhang;
+    const y = r * along[1];
+    const z = r * along[2];
+    if (uniform) {
+      sectionWind[0] = throughRotor;
+      sectionWind[1] = hubWind[1] * cosHeading - hubWind[0] * sinHeading;
+      sectionWind[2] = hubWind[2];
+    } else {
+      wind.velocity(t, y * cosHeading + x * sinHeading, z, sectionWind);
+      const u = sectionWind[0];
+      sectionWind[0] = u * cosHeading + sectionWind[1] * sinHeading;
+      sectionWind[1] = sectionWind[1] * cosHeading - u * sinHeading;
+    }
+    if (tower) addTowerShadow(tower, x, y, z, sectionWind);
+  }
+
+  /** Adds what the sums of blade `b` do to the hub, and its bending. */
+  private addBlade(b: number, motion: RotorMotion, out: RotorLoads): void {
+    const { sums, hubRadius, overhang } = this;
+    const { along, normal, turning } = this.axes;
+    const atAxis = sums.tangentialMoment + hubRadius * sums.tangential;
+    const normalAtAxis = sums.normalMoment + hubRadius * sums.normal;
+    const forceX = sums.normal * normal[0] + sums.tangential * turning[0];
+    const forceY = sums.normal * normal[1] + sums.tangential * turning[1];
+    const forceZ = sums.normal * normal[2] + sums.tangential * turning[2];
+    out.torque += atAxis * this.cosCone;
+    out.thrust += forceX;
+    out.sideForce += forceY;
+    // Along × (normal, turning) = (−turning, normal); the hub stands `overhang` before the tower.
+    out.tiltMoment += normal[1] * atAxis - turning[1] * normalAtAxis + overhang * forceZ;
+    out.yawMoment += normal[2] * atAxis - turning[2] * normalAtAxis - overhang * forceY;
+    out.flapMoment[b] = sums.normalMoment;
+    out.edgeMoment[b] = sums.tangentialMoment;
+    if (this.flap) this.bend(this.flap, b, motion.speed, along[2], normal[2], turning[2], out);
+  }
+
+  private bend(
+    flap: BladeFlap,
+    b: number,
+    speed: number,
+    bladeUp: number,
+    normalUp: number,
+    turningUp: number,
+    out: RotorLoads,
+  ): void {
+    const { own, rate, sums, sinCone, cosCone } = this;
+    const q = own[this.flapAt + b];
+    const velocity = own[this.flapRateAt + b];
+    const force = sums.modal + flap.ownForce(q, speed, bladeUp, normalUp) - flap.damping * velocity;
+    const free = force / flap.modalMass;
+    rate[this.flapAt + b] = velocity;
+    rate[this.flapRateAt + b] = free;
+    out.bendingPower += sums.modal * velocity;
+    out.lostPower += flap.damping * velocity * velocity;
+    out.inertiaChange += flap.inertiaChange(q);
+    // d/dt of the changing inertia, and the weight of a blade bent out of its plane.
+    out.inertialTorque +=
+      -speed * flap.inertiaSlope(q) * velocity +
+      (0.5 * flap.weightStiffness * q * q * cosCone - flap.weightForce * q * sinCone) * turningUp;
+    out.inertialThrust -= flap.towerCoupling * free;
+    out.massChange -= flap.towerCoupling ** 2 / flap.modalMass;
+    // Root moments: air, weight, and the centrifugal force with its arm.
+    out.flapMoment[b] +=
+      -flap.weightMoment * normalUp +
+      flap.weightForce * bladeUp * q +
+      speed * speed * (sinCone * cosCone * flap.inertiaMoment - flap.radiusMoment * q);
+    out.edgeMoment[b] -= flap.weightMoment * turningUp;
+  }
+
+  follow(
+    carrier: RotorCarrier,
+    motion: RotorMotion,
+    _x: ArrayLike<number>,
+    stateAt: number,
+    dx: { [i: number]: number },
+    out: RotorLoads,
+  ): void {
+    const { flap, cosCone } = this;
+    if (!flap) return;
+    const { normal, turning } = this.axes;
+    for (let b = 0; b < this.bladeCount; b++) {
+      this.turnAxes(b, motion.azimuth);
+      const at = stateAt + this.flapRateAt + b;
+      dx[at] -= (flap.towerCoupling / flap.modalMass) * carrier.foreAft;
+      const normalAcceleration = carrier.foreAft * normal[0] + carrier.sideSide * normal[1];
+      const turningAcceleration = carrier.foreAft * turning[0] + carrier.sideSide * turning[1];
+      out.flapMoment[b] -= flap.massMoment * normalAcceleration + flap.shapeMoment * dx[at];
+      out.edgeMoment[b] -= flap.massMoment * turningAcceleration + flap.inertiaMoment * cosCone * carrier.speed;
+    }
+  }
+
+  storedEnergy(motion: RotorMotion, x: ArrayLike<number>, stateAt: number): number {
+    const { flap } = this;
+    if (!flap) return 0;
+    const { along, normal } = this.axes;
+    let energy = 0;
+    for (let b = 0; b < this.bladeCount; b++) {
+      this.turnAxes(b, motion.azimuth);
+      const q = x[stateAt + this.flapAt + b];
+      const velocity = x[stateAt + this.flapRateAt + b];
+      energy +=
+        0.5 * flap.modalMass * velocity * velocity +
+        flap.towerCoupling * motion.foreAft * velocity +
+        0.5 * flap.inertiaChange(q) * motion.speed * motion.speed +
+        flap.potentialEnergy(q, along[2], normal[2]);
+    }
+    return energy;
+  }
+}
+
+function towerShapeOf({ tower, rotor }: Turbine): TowerShape | undefined {
+  const { topDiameter, baseDiameter = topDiameter } = tower;
+  if (topDiameter === undefined || baseDiameter === undefined) return undefined;
+  return { topDiameter, baseDiameter, hubHeight: rotor.hubHeight };
+}
+
+/** Sums start from nothing; root moments are written blade by blade. */
+function clear(out: RotorLoads): void {
+  out.torque = 0;
+  out.thrust = 0;
+  out.sideForce = 0;
+  out.tiltMoment = 0;
+  out.yawMoment = 0;
+  out.bendingPower = 0;
+  out.lostPower = 0;
+  out.inertialTorque = 0;
+  out.inertiaChange = 0;
+  out.inertialThrust = 0;
+  out.massChange = 0;
+}
