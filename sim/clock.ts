@@ -42,6 +42,8 @@ export interface RunSetup {
   seed: number;
   integrator: IntegratorChoice;
   initial: { steady: SteadyState; state: OperatingState; brakeApplied: boolean };
+  /** Added to every blade's pitch demand on its way from the control law to the drives, rad (or rad/s), at time t (s). */
+  pitchInjection?: (t: number) => number;
 }
 
 /** Signals that are held between the samples of the parts that write them. */
@@ -363,7 +365,7 @@ export class Clock {
 
   /** Protection before supervisor before control law; whoever is silent on a blade leaves it where it was sent last. */
   private actuate(t: number): void {
-    const { plant, memory, pitchDemandAt, status } = this;
+    const { plant, memory, pitchDemandAt, setup, status } = this;
     const { demands, protectionOrders, supervisorOrders } = this.held;
     const blades = demands.pitch.length;
     const orders = protectionOrders.active ? protectionOrders : supervisorOrders.active ? supervisorOrders : undefined;
@@ -374,7 +376,8 @@ export class Clock {
       }
       memory[pitchDemandAt + blades] = 0;
     } else {
-      for (let b = 0; b < blades; b++) memory[pitchDemandAt + b] = demands.pitch[b];
+      const injected = setup.pitchInjection?.(t) ?? 0;
+      for (let b = 0; b < blades; b++) memory[pitchDemandAt + b] = demands.pitch[b] + injected;
       memory[pitchDemandAt + blades] = demands.pitchAs === 'rate' ? 1 : 0;
       memory[this.own + LAW_TORQUE] = this.lawTorque();
     }
