@@ -5,6 +5,7 @@ import { readdir, readFile } from 'node:fs/promises';
 import { dirname, isAbsolute, join, normalize, relative, resolve, sep } from 'node:path';
 import { fileURLToPath, pathToFileURL } from 'node:url';
 import type { Turbine } from '../sim/turbine.ts';
+import { cachedField } from './field-cache.ts';
 import { type Files, readScenario, readTurbine } from './load.ts';
 import type { ScenarioData } from './scenario.ts';
 
@@ -47,6 +48,7 @@ export const diskFiles: Files = {
     const module: { default?: unknown } = await import(pathToFileURL(resolve(path)).href);
     return module.default;
   },
+  turbulence: (turbulence) => cachedField(turbulence),
 };
 
 export interface LoadOptions {

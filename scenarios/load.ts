@@ -8,7 +8,9 @@ import type { StopSequence } from '../controllers/stop-sequence.ts';
 import { bladeOf } from '../sim/aerodynamics/blade.ts';
 import type { ScriptedEvent } from '../sim/scripted-event.ts';
 import type { Turbine } from '../sim/turbine.ts';
+import type { PolarSeries } from '../sim/wind/polar-grid.ts';
 import { sumWind } from '../sim/wind/sum.ts';
+import type { Turbulence } from '../sim/wind/turbulence.ts';
 import type { WindField } from '../sim/wind/wind.ts';
 import { parseCsvTable } from './csv-table.ts';
 import {
@@ -32,7 +34,7 @@ import { type ControllerFileData, controllerFile } from './schema/controller.ts'
 import type { WrittenEvent } from './schema/event.ts';
 import { FILE_KINDS, type FileKind, formatTag } from './schema/file-kind.ts';
 import { protectionFile } from './schema/protection.ts';
-import { scenarioFile } from './schema/scenario.ts';
+import { type ScenarioFileData, scenarioFile } from './schema/scenario.ts';
 import { TABLE_KEYS } from './schema/table.ts';
 import { turbineFile } from './schema/turbine.ts';
 import type { Site, WindPart } from './schema/wind.ts';
@@ -50,6 +52,8 @@ export interface Files {
   digest(text: string): Promise<string>;
   /** The default export of an ES module. Throws what the module throws. */
   importDefault(path: string): Promise<unknown>;
+  /** A turbulent field, made or kept from before; made in memory when absent. */
+  turbulence?(turbulence: Turbulence): PolarSeries;
 }
 
 /**
@@ -83,19 +87,21 @@ export async function readScenario(files: Files, path: string, sets: readonly st
       : undefined;
   if (!turbine || !protection || !controller || !scenario || reading.hasProblems) throw reading.error();
 
-  const { rotor } = turbine.value;
-  const wind = reading.wind(scenario.wind, { rotorDiameter: 2 * rotor.radius, hubHeight: rotor.hubHeight }, tree);
+  const { airDensity = turbine.value.airDensity, wind: parts, ...rest } = scenario;
+  const site = siteOf(turbine.value, scenario, files);
+  const wind = reading.wind(parts, site, tree);
   const events = reading.events(scenario.events, wind, tree);
   if (reading.hasProblems) throw reading.error();
   return {
-    ...scenario,
+    ...rest,
     name: nameOf(main),
     file: main,
-    turbine: turbine.value,
+    turbine: { ...turbine.value, airDensity },
     controller: controllerData(controller.value, protection.value.normalStop, factory),
     protection: protection.value.settings,
     protectionName: protection.value.name,
     wind,
+    turbulence: parts.flatMap((part) => part.turbulence?.(site) ?? []),
     events,
     inputs: reading.inputs(main),
     overrides: sets,
@@ -125,6 +131,19 @@ type PartKind = 'turbine' | 'controller' | 'protection';
 function routeOf({ path }: Override): PartKind | undefined {
   const first = path.slice(0, Math.max(path.indexOf('.'), 0));
   return (['turbine', 'controller', 'protection'] as const).find((part) => part === first);
+}
+
+/** What the wind's parts may ask of the turbine and the run. */
+function siteOf({ rotor, ratings }: Turbine, { duration, seed }: ScenarioFileData, { turbulence }: Files): Site {
+  return {
+    rotorDiameter: 2 * rotor.radius,
+    hubHeight: rotor.hubHeight,
+    bladeCount: rotor.bladeCount,
+    rotorSpeed: ratings.rotorSpeed,
+    duration,
+    seed,
+    ...(turbulence && { turbulence }),
+  };
 }
 
 function into(part: PartKind, overrides: readonly Override[]): Override[] {

@@ -6,6 +6,7 @@ import type { SupervisorSettings } from '../controllers/supervisor.ts';
 import type { TorqueLawSettings } from '../controllers/torque-curve.ts';
 import type { ScriptedEvent } from '../sim/scripted-event.ts';
 import type { Turbine } from '../sim/turbine.ts';
+import type { Turbulence } from '../sim/wind/turbulence.ts';
 import type { WindField } from '../sim/wind/wind.ts';
 
 export type LawSettings =
@@ -69,6 +70,8 @@ export interface ScenarioData {
   protection: ProtectionSettings;
   protectionName: string;
   wind: WindField;
+  /** What the turbulent parts of the wind are made of. */
+  turbulence: readonly Turbulence[];
   start: StartData;
   /** s */
   duration: number;

@@ -12,7 +12,7 @@ import { VERSION } from './version.ts';
 const METHOD = 1;
 
 /** `GALEHOLD_CACHE`, or the user's cache folder as the XDG base directory specification names it. */
-function cacheFolder(): string {
+export function cacheFolder(): string {
   const { GALEHOLD_CACHE, XDG_CACHE_HOME } = process.env;
   return GALEHOLD_CACHE ?? join(XDG_CACHE_HOME ?? join(homedir(), '.cache'), 'galehold');
 }

@@ -1,6 +1,7 @@
 /** The scenario file. */
 import { z } from 'zod';
 import type { Machine } from '../../controllers/contract.ts';
+import { airDensity } from '../../sim/air-density.ts';
 import type { LimitData, ScenarioData, StartData } from '../scenario.ts';
 import { event, type WrittenEvent } from './event.ts';
 import { addFault, camelKeys, choice, count, mapping, number, onceDecoded, quantity, tag, text } from './field.ts';
@@ -79,11 +80,27 @@ const integrator = z
   .prefault({ kind: 'odex' })
   .meta({ description: 'How the plant is integrated.' });
 
+/** Highest site that the barometric formula serves, m, and the coldest and hottest air, K. */
+const HIGHEST_SITE = 6000;
+const COLDEST_AIR = 213.15;
+const HOTTEST_AIR = 333.15;
+
+const air = mapping({
+  altitude: quantity('length', 'Of the hub above sea level', { atLeast: -500, atMost: HIGHEST_SITE }),
+  temperature: quantity('temperature', 'Of the air there; that of the standard atmosphere when absent', {
+    atLeast: COLDEST_AIR,
+    atMost: HOTTEST_AIR,
+  }).optional(),
+})
+  .transform(({ altitude, temperature }) => ({ density: airDensity(altitude, temperature) }))
+  .meta({ description: "The air at the site; its density takes the place of the turbine file's." })
+  .optional();
+
 /** A scenario without the files it refers to. */
 export type ScenarioFileData = Pick<
   ScenarioData,
   'title' | 'story' | 'start' | 'duration' | 'record' | 'expected' | 'seed' | 'integrator'
-> & { wind: readonly WindPart[]; events: readonly WrittenEvent[]; limits: readonly LimitData[] };
+> & { airDensity?: number; wind: readonly WindPart[]; events: readonly WrittenEvent[]; limits: readonly LimitData[] };
 
 interface Timed {
   duration: number;
@@ -121,6 +138,7 @@ export function scenarioFile(machine: Machine) {
     turbine: reference('The turbine'),
     controller: reference('The controller'),
     protection: reference('The protection'),
+    air,
     wind,
     start,
     duration: quantity('time', 'How long the run lasts', { above: 0 }),
@@ -140,6 +158,7 @@ export function scenarioFile(machine: Machine) {
       ({ title, story = '', expect, ...file }): ScenarioFileData => ({
         title,
         story,
+        airDensity: file.air?.density,
         wind: file.wind,
         start: file.start,
         duration: file.duration,

@@ -13,13 +13,30 @@ export interface Column {
   readonly kind: ColumnKind;
   readonly optional?: boolean;
 }
+/** Columns by name. A `#` in a name stands for a plain number: any number of such columns may be there, or none. */
 type Columns = Readonly<Record<string, Column>>;
 
 type Cell<C extends Column> = C['kind'] extends 'word' ? string : number;
-/** One list a column; a column that may be absent is then undefined. */
+/** A column of a name with a number in it, and that number. */
+export interface NumberedColumn {
+  number: number;
+  values: number[];
+}
+/** One list a column; a column that may be absent is then undefined. Numbered columns come in the order of their numbers. */
 export type TableData<C extends Columns> = {
-  [K in keyof C]: C[K] extends { optional: true } ? Cell<C[K]>[] | undefined : Cell<C[K]>[];
+  [K in keyof C]: K extends `${string}#${string}`
+    ? NumberedColumn[]
+    : C[K] extends { optional: true }
+      ? Cell<C[K]>[] | undefined
+      : Cell<C[K]>[];
 };
+
+const NUMBER = /\d+(?:\.\d+)?/;
+
+/** The name under which `columns` lists a header's column; undefined where it lists none. */
+function listedName(name: string, columns: Columns): string | undefined {
+  return [name, name.replace(NUMBER, '#')].find((listed) => Object.hasOwn(columns, listed));
+}
 
 interface HeaderCell {
   name: string;
@@ -32,7 +49,7 @@ function readHeader(cell: string): HeaderCell {
 }
 
 function headerProblem({ name, unit }: HeaderCell, columns: Columns): string | undefined {
-  const column = columns[name];
+  const column = columns[listedName(name, columns) ?? ''];
   if (!column) return `unknown column "${name}"${suggestion(name, Object.keys(columns))}`;
   const { kind } = column;
   if (kind === 'number' || kind === 'word') {
@@ -72,7 +89,7 @@ function checkHeader(headers: readonly HeaderCell[], columns: Columns, report: R
   });
   for (const [name, column] of Object.entries(columns)) {
     const isThere = headers.some((h) => h.name === name || nearest(h.name, Object.keys(columns)) === name);
-    if (!column.optional && !isThere) wrong(['columns'], `missing column "${name}"`);
+    if (!column.optional && !name.includes('#') && !isThere) wrong(['columns'], `missing column "${name}"`);
   }
   return isGood;
 }
@@ -92,12 +109,32 @@ function decode<C extends Columns>(
     }
     headers.forEach(({ name, unit }, c) => {
       const cell = row[c] ?? '';
-      const value = readCell(cell, columns[name] ?? { kind: 'word' }, unit);
-      if (value === undefined) report(['rows', r, c], `"${cell}" is not a number`);
-      else data[name]?.push(value);
+      const value = readCell(cell, columns[listedName(name, columns) ?? ''] ?? { kind: 'word' }, unit);
+      if (value === undefined) {
+        report(
+          ['rows', r, c],
+          cell === '' ? 'no value stands here, and none is invented' : `"${cell}" is not a number`,
+        );
+      } else data[name]?.push(value);
     });
   });
-  return data as TableData<C>;
+  return { ...data, ...numberedColumns(data, columns) } as TableData<C>;
+}
+
+function numberedColumns(
+  data: Record<string, (string | number)[]>,
+  columns: Columns,
+): Record<string, NumberedColumn[]> {
+  const listed = Object.keys(columns).filter((name) => name.includes('#'));
+  return Object.fromEntries(
+    listed.map((pattern) => {
+      const names = Object.keys(data).filter(
+        (name) => !Object.hasOwn(columns, name) && listedName(name, columns) === pattern,
+      );
+      const found = names.map((name) => ({ number: Number(NUMBER.exec(name)?.[0]), values: data[name] as number[] }));
+      return [pattern, found.sort((a, b) => a.number - b.number)];
+    }),
+  );
 }
 
 /**

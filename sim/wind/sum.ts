@@ -1,17 +1,16 @@
 import type { WindField } from './wind.ts';
 
-/** The sum of several fields: mean wind, gusts, swings; turned as a whole by the sum of their directions. */
+/** The wind of a run: the sum of its parts, turned as a whole by the sum of their directions. */
 export function sumWind(parts: readonly WindField[]): WindField {
-  const sum = sumOfSpeeds(parts);
-  const directions = parts.flatMap(({ direction }) => (direction ? [direction] : []));
-  return directions.length === 0 ? sum : turned(sum, directions);
+  const { direction, ...sum } = addedWind(parts);
+  return direction ? turned(sum, direction) : sum;
 }
 
-function sumOfSpeeds(parts: readonly WindField[]): WindField {
+/** Several parts as one, which `sumWind` then turns with all the others. */
+export function addedWind(parts: readonly WindField[]): WindField {
   const count = parts.length;
   const velocityOfPart = new Float64Array(3);
   return {
-    uniform: parts.every((part) => part.uniform === true),
     velocity(t, y, z, out) {
       out.fill(0, 0, 3);
       for (let i = 0; i < count; i++) {
@@ -21,6 +20,7 @@ function sumOfSpeeds(parts: readonly WindField[]): WindField {
         out[2] += velocityOfPart[2];
       }
     },
+    ...addedDirection(parts),
     rotorMean(t) {
       let mean = 0;
       for (let i = 0; i < count; i++) mean += parts[i].rotorMean(t);
@@ -34,13 +34,20 @@ function sumOfSpeeds(parts: readonly WindField[]): WindField {
   };
 }
 
-function turned(wind: WindField, directions: readonly ((t: number) => number)[]): WindField {
+function addedDirection(parts: readonly WindField[]): Pick<WindField, 'direction'> {
+  const directions = parts.flatMap(({ direction }) => (direction ? [direction] : []));
   const count = directions.length;
-  function direction(t: number): number {
-    let angle = 0;
-    for (let i = 0; i < count; i++) angle += directions[i](t);
-    return angle;
-  }
+  if (count === 0) return {};
+  return {
+    direction(t) {
+      let angle = 0;
+      for (let i = 0; i < count; i++) angle += directions[i](t);
+      return angle;
+    },
+  };
+}
+
+function turned(wind: WindField, direction: (t: number) => number): WindField {
   return {
     ...wind,
     direction,

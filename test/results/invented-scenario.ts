@@ -111,6 +111,7 @@ export function inventedScenario(changes: Partial<ScenarioData> = {}): ScenarioD
       stops: { stop: [] },
     },
     protectionName: 'invented',
+    turbulence: [],
     wind: steadyWind({ speed: 12 }),
     start: { kind: 'trim', wind: 12 },
     duration: 100,
