@@ -20,6 +20,8 @@ export interface SteadyState {
   shaftTorque: number;
   /** N */
   thrust: number;
+  /** Mean force to the left, N; 0 when absent. */
+  sideForce?: number;
   /** The rotor's own states; at rest without motion of the air when absent. */
   rotorStates?: Float64Array;
   /** How far the wind comes off the nacelle's axis, rad, positive towards +y; 0 when absent. */
@@ -111,9 +113,9 @@ export class Plant {
     x[d + 3] = kind === 'rigid' ? 0 : state.shaftTorque / stiffness;
     x[this.tower.at] = state.thrust / this.tower.stiffness;
     const sideways = this.towerSideways;
-    // Standing shafts (a brake that holds) pass on what the steady torque in the shaft is, too.
-    if (sideways) x[sideways.at] = (-this.topSlope * state.shaftTorque) / sideways.stiffness;
-    const { yawError = 0, rotorStates } = state;
+    const { yawError = 0, sideForce = 0, rotorStates } = state;
+    const rollMoment = state.shaftTorque + this.drivetrain.lossTorque(state.rotorSpeed);
+    if (sideways) x[sideways.at] = (sideForce - this.topSlope * rollMoment) / sideways.stiffness;
     this.yaw.start((this.wind.direction?.(0) ?? 0) - yawError, yawError, x);
     if (rotorStates) x.set(rotorStates, this.rotorAt);
     x.fill(state.pitch, this.pitch.angleAt, this.pitch.angleAt + this.turbine.rotor.bladeCount);

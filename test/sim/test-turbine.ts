@@ -166,6 +166,9 @@ const TORQUE_LAW: TorqueLawSettings = {
   rateLimit: 5e4,
 };
 
+/** Torque (N m) over generator speed (rad/s) on which the test law settles. */
+export const testTorqueCurve = steadyTorque(TORQUE_LAW, MACHINE);
+
 export function testController(sampleTime = 0.01): Controller {
   return stackLaws('test law', sampleTime, [
     scheduledPiPitch(
@@ -217,7 +220,7 @@ export function testRun(windSpeed: number, changes: Partial<RunSetup> = {}): Clo
     seed: 1,
     integrator: { kind: 'odex', relativeTolerance: 1e-6 },
     initial: {
-      steady: new Trim(turbine, rotor).at(windSpeed, steadyTorque(TORQUE_LAW, MACHINE)),
+      steady: new Trim(turbine, rotor).at(windSpeed, testTorqueCurve),
       state: 'power production',
       brakeApplied: false,
     },
