@@ -386,9 +386,9 @@ export class Clock {
     plant.pitch.arrive(this.tick, plant.pitch.delayRest > 0, memory);
     plant.pitch.supply(plant.generator.gridConnected(memory), this.x, memory);
 
-    const fraction = Math.min(protectionOrders.torqueFraction, supervisorOrders.torqueFraction);
-    status.torqueDemand = memory[this.own + LAW_TORQUE] * fraction;
+    status.torqueDemand = memory[this.own + LAW_TORQUE] * (orders?.torqueFraction ?? 1);
     plant.generator.demand(status.torqueDemand, memory);
+    // A brake that anybody asks for stays on.
     plant.brake.order(protectionOrders.brake || supervisorOrders.brake || (!orders && demands.brake), t, memory);
     status.state = protectionOrders.active ? protectionOrders.state : this.held.measured.state;
     status.activeGuard = 1 + this.setup.protection.firstGuard(this.protectionMemory);

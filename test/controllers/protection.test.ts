@@ -125,6 +125,11 @@ describe('The safety chain', () => {
     willing.step({ rotorSpeed: 0 }, 2);
     expect(willing.made.activeStop(willing.memory)).toBe(-1);
 
+    const turning = chain();
+    turning.step({ gridConnected: false });
+    turning.step({}, 10);
+    expect(turning.stop()).toBe('emergency');
+
     const unwilling = chain();
     unwilling.step({ gridConnected: false, buttonPressed: true, rotorSpeed: 0 }, 200);
     unwilling.step({ rotorSpeed: 0 }, 1000);
@@ -178,7 +183,9 @@ describe('A stop sequence', () => {
       OPERATING_STATES[chain().step(changes, samples).state];
     expect(stateAfter({ buttonPressed: true }, 10)).toBe('manual stop');
     expect(stateAfter({ gridConnected: false }, 10)).toBe('emergency stop');
-    expect(stateAfter({ gridConnected: false, rotorSpeed: 0 }, 200)).toBe('parked');
+    // Its last wait is a second long.
+    expect(stateAfter({ gridConnected: false, rotorSpeed: 0 }, 99)).toBe('emergency stop');
+    expect(stateAfter({ gridConnected: false, rotorSpeed: 0 }, 103)).toBe('parked');
   });
 });
 

@@ -154,6 +154,19 @@ describe('A jump in the wind', () => {
   });
 });
 
+describe('A stop sequence', () => {
+  it('takes the generator torque from what the law asked last to zero in its time', () => {
+    const clock = testRun(14, {
+      events: [{ trigger: { kind: 'time', at: 5 }, action: { kind: 'manual stop' } }],
+      duration: 8,
+    });
+    const demand = trace(clock, 'generator_torque_demand_kn_m');
+    // The sequence drops the torque over one second.
+    expect(demand[550] / demand[499]).toBeCloseTo(0.5, 2);
+    expect(demand[601]).toBe(0);
+  });
+});
+
 describe('The two integrators', () => {
   it('agree through a gust, a grid loss and a braked stop', () => {
     const [first, second] = (
