@@ -54,13 +54,17 @@ export function blend(inner: Airfoil, outer: Airfoil, share: number): Airfoil {
 
 /** Lift and drag coefficient at any angle of attack (rad), written to `out`. */
 export function coefficientsAt(airfoil: Airfoil, angle: number, out: SectionCoefficients): void {
+  coefficientsFrom(airfoil.nodes, angle, out);
+}
+
+/** The same from an airfoil's nodes. */
+export function coefficientsFrom(n: Float64Array, angle: number, out: SectionCoefficients): void {
   const position = (angle + Math.PI) / STEP;
   const floor = Math.floor(position);
   const t = position - floor;
   const node = floor - NODES * Math.floor(floor / NODES);
   const at = node * STRIDE;
   const next = node === NODES - 1 ? 0 : at + STRIDE;
-  const n = airfoil.nodes;
   // Cubic Hermite between nodes.
   const u = 1 - t;
   const startValue = u * u * (1 + 2 * t);

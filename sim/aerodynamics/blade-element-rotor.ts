@@ -2,9 +2,9 @@ import { BladeFlap } from '../blade-flap.ts';
 import type { Rotor, RotorCarrier, RotorLoads, RotorMotion } from '../rotor.ts';
 import type { Turbine } from '../turbine.ts';
 import type { WindField } from '../wind/wind.ts';
-import { coefficientsAt } from './airfoil.ts';
+import { coefficientsFrom } from './airfoil.ts';
 import { type Blade, bladeOf } from './blade.ts';
-import { WAKE_SHARE, wakeTime, wakeTimeRatio } from './dynamic-wake.ts';
+import { lateRateRatio, WAKE_SHARE, wakeRate } from './dynamic-wake.ts';
 import { type AttachedFlow, attachedFlow, LAG_CHORDS, laggedLift, staticAttachment } from './lift-lag.ts';
 import { lossAt } from './loss-table.ts';
 import {
@@ -85,21 +85,33 @@ export class BladeElementRotor implements Rotor {
 
   /** Per section. */
   private readonly radius: Float64Array;
-  private readonly width: Float64Array;
   private readonly chord: Float64Array;
   private readonly twist: Float64Array;
   private readonly solidity: Float64Array;
   private readonly tipExponent: Float64Array;
   private readonly hubExponent: Float64Array;
-  private readonly timeRatio: Float64Array;
+  private readonly rateRatio: Float64Array;
   private readonly shape: Float64Array;
   private readonly attached: readonly AttachedFlow[];
+  private readonly nodes: readonly Float64Array[];
+  /** ½ρ c Δr, kg/m. */
+  private readonly pressure: Float64Array;
 
-  /** Scratch: own states and their derivatives, one blade's axes, wind. The loop below reads nothing else. */
+  /**
+   * Scratch: own states and their derivatives, then one blade's axes, winds and loads. The loops over sections are kept
+   * short, over typed arrays, so that the compiler can lay them out whole: this is where a run's time goes.
+   */
   private readonly own: Float64Array;
   private readonly rate: Float64Array;
   private readonly hubWind = new Float64Array(3);
   private readonly sectionWind = new Float64Array(3);
+  private readonly freeNormal: Float64Array;
+  private readonly freeTangential: Float64Array;
+  private readonly speed: Float64Array;
+  private readonly lift: Float64Array;
+  private readonly drag: Float64Array;
+  private readonly normalLoad: Float64Array;
+  private readonly tangentialLoad: Float64Array;
   private readonly axes = { along: new Float64Array(3), normal: new Float64Array(3), turning: new Float64Array(3) };
   private readonly coefficients = { lift: 0, drag: 0 };
   private readonly sums = { normal: 0, tangential: 0, normalMoment: 0, tangentialMoment: 0, modal: 0 };
@@ -129,7 +141,7 @@ export class BladeElementRotor implements Rotor {
 
     const column = (value: (i: number) => number) => Float64Array.from(sections, (_, i) => value(i));
     this.radius = column((i) => sections[i].radius);
-    this.width = column((i) => sections[i].width);
+    this.pressure = column((i) => 0.5 * turbine.airDensity * sections[i].chord * sections[i].width);
     this.chord = column((i) => sections[i].chord);
     this.twist = column((i) => sections[i].twist);
     this.solidity = column((i) => solidityAt(rotor.bladeCount, sections[i].chord, sections[i].radius));
@@ -137,9 +149,17 @@ export class BladeElementRotor implements Rotor {
     const half = 0.5 * rotor.bladeCount;
     this.tipExponent = column((i) => Math.sqrt((half * (rotor.radius - sections[i].radius)) / sections[i].radius));
     this.hubExponent = column((i) => Math.sqrt((half * (sections[i].radius - rotor.hubRadius)) / rotor.hubRadius));
-    this.timeRatio = column((i) => wakeTimeRatio(sections[i].radius / rotor.radius));
+    this.rateRatio = column((i) => lateRateRatio(sections[i].radius / rotor.radius));
     this.shape = column((i) => flap?.shapeAt(sections[i].radius) ?? 0);
     this.attached = sections.map(({ airfoil }) => attachedFlow(airfoil));
+    this.nodes = sections.map(({ airfoil }) => airfoil.nodes);
+    this.freeNormal = column(() => 0);
+    this.freeTangential = column(() => 0);
+    this.speed = column(() => 0);
+    this.lift = column(() => 0);
+    this.drag = column(() => 0);
+    this.normalLoad = column(() => 0);
+    this.tangentialLoad = column(() => 0);
 
     if (this.isDynamic) for (const name of WAKE_STATES) this.declare(name, WAKE_SCALE);
     this.lagAt = this.lags ? this.declare('attached share', 1) : this.stateNames.length;
@@ -185,7 +205,7 @@ export class BladeElementRotor implements Rotor {
     for (let i = 0; i < this.sectionCount; i++) {
       const section = blade.sections[i];
       solveSection(section, blade, windSpeed, rotorSpeed, pitch, this.airDensity, FULL_MOMENTUM, steady);
-      modal += this.shape[i] * steady.normalForce * this.width[i];
+      modal += this.shape[i] * steady.normalForce * section.width;
       const axial = windSpeed - steady.normalSpeed;
       const tangential = steady.tangentialSpeed - rotorSpeed * section.radius;
       const { slope, zeroLiftAngle } = this.attached[i];
@@ -225,10 +245,15 @@ export class BladeElementRotor implements Rotor {
     for (let i = 0; i < own.length; i++) own[i] = x[stateAt + i];
     clear(out);
     wind.velocity(t, 0, 0, this.hubWind);
-    const uniform = wind.uniform === true;
+    const throughRotor = this.hubWind[0] * Math.cos(motion.heading) + this.hubWind[1] * Math.sin(motion.heading);
     for (let b = 0; b < bladeCount; b++) {
       this.turnAxes(b, motion.azimuth);
-      this.sumSections(b, t, wind, uniform, motion, x[pitchAt[b]]);
+      this.meet(b, t, wind, motion);
+      this.drawTriangles(b, x[pitchAt[b]]);
+      this.readPolars(b);
+      if (this.lags) this.lagLift(b);
+      this.sumLoads(b);
+      if (this.isDynamic) this.blowWake(b, throughRotor);
       this.addBlade(b, motion, out);
     }
     for (let i = 0; i < own.length; i++) dx[stateAt + i] = rate[i];
@@ -253,124 +278,28 @@ export class BladeElementRotor implements Rotor {
   }
 
   /**
-   * Flow, load and wake of every section of blade `b`, into `sums` and `rate`. The one loop that takes the time: typed
-   * arrays and plain arithmetic only.
+   * Wind against every section of blade `b` without what the rotor induces: normal to blade and turning, downwind, and
+   * against the turning, into `freeNormal` and `freeTangential`.
    */
-  private sumSections(
-    b: number,
-    t: number,
-    wind: WindField,
-    uniform: boolean,
-    motion: RotorMotion,
-    pitch: number,
-  ): void {
-    const { sectionCount, own, rate, flows, sums, coefficients, sectionWind, hubWind, isDynamic, lags, lagAt } = this;
-    const { radius, width, chord, twist, solidity, tipExponent, hubExponent, timeRatio, shape, hubRadius } = this;
+  private meet(b: number, t: number, wind: WindField, motion: RotorMotion): void {
+    const { sectionCount, radius, shape, sectionWind, hubWind, freeNormal, freeTangential } = this;
     const { normal, turning } = this.axes;
-    const { sections } = this.blade;
-    const cells = this.bladeCount * sectionCount;
     const sinHeading = Math.sin(motion.heading);
     const cosHeading = Math.cos(motion.heading);
     const normalMotion = motion.foreAft * normal[0] + motion.sideSide * normal[1];
     const turningMotion = motion.foreAft * turning[0] + motion.sideSide * turning[1];
     const edgeRate = motion.speed * this.cosCone;
-    const flapVelocity = this.flap ? own[this.flapRateAt + b] : 0;
-    const throughRotor = hubWind[0] * cosHeading + hubWind[1] * sinHeading;
+    const flapVelocity = this.flap ? this.own[this.flapRateAt + b] : 0;
+    const uniform = wind.uniform === true;
     const sampled = !uniform || this.tower !== undefined;
-    const halfDensity = 0.5 * this.airDensity;
-    if (uniform) {
-      sectionWind[0] = throughRotor;
-      sectionWind[1] = hubWind[1] * cosHeading - hubWind[0] * sinHeading;
-      sectionWind[2] = hubWind[2];
-    }
-    let blowing = sectionWind[0] * normal[0] + sectionWind[1] * normal[1] + sectionWind[2] * normal[2];
-    let against = sectionWind[0] * turning[0] + sectionWind[1] * turning[1] + sectionWind[2] * turning[2];
-    let sumNormal = 0;
-    let sumTangential = 0;
-    let normalMoment = 0;
-    let tangentialMoment = 0;
-    let modal = 0;
-
+    if (!sampled) turnIntoNacelle(hubWind, sinHeading, cosHeading, sectionWind);
     for (let i = 0; i < sectionCount; i++) {
-      const at = b * sectionCount + i;
-      if (sampled) {
-        this.windAt(t, wind, uniform, radius[i], sinHeading, cosHeading, throughRotor);
-        blowing = sectionWind[0] * normal[0] + sectionWind[1] * normal[1] + sectionWind[2] * normal[2];
-        against = sectionWind[0] * turning[0] + sectionWind[1] * turning[1] + sectionWind[2] * turning[2];
-      }
-      const freeNormal = blowing - normalMotion - flapVelocity * shape[i];
-      const freeTangential = edgeRate * radius[i] + turningMotion - against;
-      let axialInduced: number;
-      let tangentialInduced: number;
-      if (isDynamic) {
-        axialInduced = own[at + cells];
-        tangentialInduced = own[at + 3 * cells];
-      } else {
-        const { steady } = this;
-        const turningRate = freeTangential / radius[i];
-        solveSection(sections[i], this.blade, freeNormal, turningRate, pitch, 1, FULL_MOMENTUM, steady);
-        axialInduced = freeNormal - steady.normalSpeed;
-        tangentialInduced = steady.tangentialSpeed - freeTangential;
-      }
-      // Velocity triangle: φ = atan2(v_n, v_t), α = φ − twist − θ.
-      const vn = freeNormal - axialInduced;
-      const vt = freeTangential + tangentialInduced;
-      const speed = Math.sqrt(vn * vn + vt * vt);
-      const alpha = Math.atan2(vn, vt) - twist[i] - pitch;
-      coefficientsAt(sections[i].airfoil, alpha, coefficients);
-      let lift = coefficients.lift;
-      const drag = coefficients.drag;
-      if (lags) {
-        const { slope, zeroLiftAngle } = this.attached[i];
-        const inviscid = slope * Math.sin(alpha - zeroLiftAngle);
-        const settled = staticAttachment(lift, inviscid);
-        const share = own[lagAt + at];
-        lift = laggedLift(lift, inviscid, settled, share);
-        rate[lagAt + at] = ((settled - share) * speed) / (LAG_CHORDS * chord[i]);
-      }
-      // ½ρW²c (C_l cos φ + C_d sin φ) and ½ρW²c (C_l sin φ − C_d cos φ).
-      const along = lift * vt + drag * vn;
-      const across = lift * vn - drag * vt;
-      const pressure = halfDensity * speed * chord[i] * width[i];
-      const normalForce = pressure * along;
-      const tangentialForce = pressure * across;
-      sumNormal += normalForce;
-      sumTangential += tangentialForce;
-      normalMoment += normalForce * radius[i];
-      tangentialMoment += tangentialForce * radius[i];
-      modal += normalForce * shape[i];
-
-      flows.angleOfAttack[at] = alpha;
-      flows.normalSpeed[at] = vn;
-      flows.tangentialSpeed[at] = vt;
-      flows.axialInduced[at] = axialInduced;
-      flows.tangentialInduced[at] = tangentialInduced;
-      if (!isDynamic) continue;
-
-      let axialSettled = 0;
-      let tangentialSettled = 0;
-      if (speed > 0) {
-        const sin = vn / speed;
-        const spread = 1 / Math.sqrt(Math.abs(sin));
-        const loss = Math.max(lossAt(tipExponent[i] * spread) * lossAt(hubExponent[i] * spread), LEAST_LOSS_FACTOR);
-        const normalLoad = (solidity[i] * along) / speed;
-        const tangentialLoad = (solidity[i] * across) / speed;
-        const stream = axialStream(normalLoad, sin, loss);
-        axialSettled = speed * (stream - sin);
-        tangentialSettled = speed * swirlSpeed(normalLoad, tangentialLoad, sin, loss, stream);
-      }
-      const early = wakeTime(this.tipRadius, throughRotor, axialInduced);
-      const late = timeRatio[i] * early;
-      rate[at] = ((1 - WAKE_SHARE) * axialSettled - own[at]) / early;
-      rate[at + cells] = (own[at] + WAKE_SHARE * axialSettled - axialInduced) / late;
-      rate[at + 2 * cells] = ((1 - WAKE_SHARE) * tangentialSettled - own[at + 2 * cells]) / early;
-      rate[at + 3 * cells] = (own[at + 2 * cells] + WAKE_SHARE * tangentialSettled - tangentialInduced) / late;
+      if (sampled) this.windAt(t, wind, uniform, radius[i], sinHeading, cosHeading);
+      const blowing = sectionWind[0] * normal[0] + sectionWind[1] * normal[1] + sectionWind[2] * normal[2];
+      const along = sectionWind[0] * turning[0] + sectionWind[1] * turning[1] + sectionWind[2] * turning[2];
+      freeNormal[i] = blowing - normalMotion - flapVelocity * shape[i];
+      freeTangential[i] = edgeRate * radius[i] + turningMotion - along;
     }
-    sums.normal = sumNormal;
-    sums.tangential = sumTangential;
-    sums.normalMoment = normalMoment - hubRadius * sumNormal;
-    sums.tangentialMoment = tangentialMoment - hubRadius * sumTangential;
-    sums.modal = modal;
   }
 
   /** Wind at radius `r` of the blade whose axes are set, in the nacelle's frame, into `sectionWind`. */
@@ -381,7 +310,6 @@ export class BladeElementRotor implements Rotor {
     r: number,
     sinHeading: number,
     cosHeading: number,
-    throughRotor: number,
   ): void {
     const { sectionWind, hubWind, tower } = this;
     const { along } = this.axes;
@@ -389,16 +317,134 @@ export class BladeElementRotor implements Rotor {
     const y = r * along[1];
     const z = r * along[2];
     if (uniform) {
-      sectionWind[0] = throughRotor;
-      sectionWind[1] = hubWind[1] * cosHeading - hubWind[0] * sinHeading;
-      sectionWind[2] = hubWind[2];
+      turnIntoNacelle(hubWind, sinHeading, cosHeading, sectionWind);
     } else {
       wind.velocity(t, y * cosHeading + x * sinHeading, z, sectionWind);
-      const u = sectionWind[0];
-      sectionWind[0] = u * cosHeading + sectionWind[1] * sinHeading;
-      sectionWind[1] = sectionWind[1] * cosHeading - u * sinHeading;
+      turnIntoNacelle(sectionWind, sinHeading, cosHeading, sectionWind);
     }
     if (tower) addTowerShadow(tower, x, y, z, sectionWind);
+  }
+
+  /** Velocity triangles of blade `b`: φ = atan2(v_n, v_t), α = φ − twist − θ. */
+  private drawTriangles(b: number, pitch: number): void {
+    const { sectionCount, own, twist, freeNormal, freeTangential, speed } = this;
+    const { angleOfAttack, normalSpeed, tangentialSpeed, axialInduced, tangentialInduced } = this.flows;
+    const cells = this.bladeCount * sectionCount;
+    for (let i = 0; i < sectionCount; i++) {
+      const at = b * sectionCount + i;
+      if (this.isDynamic) {
+        axialInduced[at] = own[at + cells];
+        tangentialInduced[at] = own[at + 3 * cells];
+      } else {
+        this.balanceSection(i, at, pitch);
+      }
+      const normal = freeNormal[i] - axialInduced[at];
+      const tangential = freeTangential[i] + tangentialInduced[at];
+      normalSpeed[at] = normal;
+      tangentialSpeed[at] = tangential;
+      speed[i] = Math.sqrt(normal * normal + tangential * tangential);
+      angleOfAttack[at] = Math.atan2(normal, tangential) - twist[i] - pitch;
+    }
+  }
+
+  /** Induced velocities that balance the section at once. */
+  private balanceSection(i: number, at: number, pitch: number): void {
+    const { steady, blade, flows } = this;
+    const turningRate = this.freeTangential[i] / this.radius[i];
+    solveSection(blade.sections[i], blade, this.freeNormal[i], turningRate, pitch, 1, FULL_MOMENTUM, steady);
+    flows.axialInduced[at] = this.freeNormal[i] - steady.normalSpeed;
+    flows.tangentialInduced[at] = steady.tangentialSpeed - this.freeTangential[i];
+  }
+
+  /** Lift and drag coefficients of blade `b`, into `lift` and `drag`. */
+  private readPolars(b: number): void {
+    const { sectionCount, nodes, coefficients, lift, drag } = this;
+    const { angleOfAttack } = this.flows;
+    for (let i = 0; i < sectionCount; i++) {
+      coefficientsFrom(nodes[i], angleOfAttack[b * sectionCount + i], coefficients);
+      lift[i] = coefficients.lift;
+      drag[i] = coefficients.drag;
+    }
+  }
+
+  /** Puts the lagging lift in the place of the steady one. */
+  private lagLift(b: number): void {
+    const { sectionCount, own, rate, lift, speed, chord } = this;
+    for (let i = 0; i < sectionCount; i++) {
+      const at = b * sectionCount + i;
+      const { slope, zeroLiftAngle } = this.attached[i];
+      const inviscid = slope * Math.sin(this.flows.angleOfAttack[at] - zeroLiftAngle);
+      const settled = staticAttachment(lift[i], inviscid);
+      const share = own[this.lagAt + at];
+      lift[i] = laggedLift(lift[i], inviscid, settled, share);
+      rate[this.lagAt + at] = ((settled - share) * speed[i]) / (LAG_CHORDS * chord[i]);
+    }
+  }
+
+  /**
+   * Loads of blade `b`: ½ρW²c (C_l cos φ + C_d sin φ) and ½ρW²c (C_l sin φ − C_d cos φ) a metre; their coefficients
+   * times W into `normalLoad` and `tangentialLoad`, their sums into `sums`.
+   */
+  private sumLoads(b: number): void {
+    const { sectionCount, radius, pressure, shape, hubRadius, lift, drag, speed, normalLoad, tangentialLoad } = this;
+    const { normalSpeed, tangentialSpeed } = this.flows;
+    const { sums } = this;
+    let normal = 0;
+    let tangential = 0;
+    let normalMoment = 0;
+    let tangentialMoment = 0;
+    let modal = 0;
+    for (let i = 0; i < sectionCount; i++) {
+      const vn = normalSpeed[b * sectionCount + i];
+      const vt = tangentialSpeed[b * sectionCount + i];
+      const along = lift[i] * vt + drag[i] * vn;
+      const across = lift[i] * vn - drag[i] * vt;
+      const normalForce = pressure[i] * speed[i] * along;
+      const tangentialForce = pressure[i] * speed[i] * across;
+      const arm = radius[i] - hubRadius;
+      normalLoad[i] = along;
+      tangentialLoad[i] = across;
+      normal += normalForce;
+      tangential += tangentialForce;
+      normalMoment += normalForce * arm;
+      tangentialMoment += tangentialForce * arm;
+      modal += normalForce * shape[i];
+    }
+    sums.normal = normal;
+    sums.tangential = tangential;
+    sums.normalMoment = normalMoment;
+    sums.tangentialMoment = tangentialMoment;
+    sums.modal = modal;
+  }
+
+  /** Rates of the wake of blade `b`, towards what the momentum balance asks for the present loads. */
+  private blowWake(b: number, throughRotor: number): void {
+    const { sectionCount, own, rate, speed, normalLoad, tangentialLoad, solidity, rateRatio, tipRadius } = this;
+    const { tipExponent, hubExponent } = this;
+    const { normalSpeed, axialInduced, tangentialInduced } = this.flows;
+    const cells = this.bladeCount * sectionCount;
+    for (let i = 0; i < sectionCount; i++) {
+      const at = b * sectionCount + i;
+      let axialSettled = 0;
+      let tangentialSettled = 0;
+      if (speed[i] > 0) {
+        const perSpeed = 1 / speed[i];
+        const sin = normalSpeed[at] * perSpeed;
+        const spread = 1 / Math.sqrt(Math.abs(sin));
+        const loss = Math.max(lossAt(tipExponent[i] * spread) * lossAt(hubExponent[i] * spread), LEAST_LOSS_FACTOR);
+        const normal = solidity[i] * normalLoad[i] * perSpeed;
+        const tangential = solidity[i] * tangentialLoad[i] * perSpeed;
+        const stream = axialStream(normal, sin, loss);
+        axialSettled = speed[i] * (stream - sin);
+        tangentialSettled = speed[i] * swirlSpeed(normal, tangential, sin, loss, stream);
+      }
+      const early = wakeRate(tipRadius, throughRotor, axialInduced[at]);
+      const late = rateRatio[i] * early;
+      rate[at] = early * ((1 - WAKE_SHARE) * axialSettled - own[at]);
+      rate[at + cells] = late * (own[at] + WAKE_SHARE * axialSettled - axialInduced[at]);
+      rate[at + 2 * cells] = early * ((1 - WAKE_SHARE) * tangentialSettled - own[at + 2 * cells]);
+      rate[at + 3 * cells] = late * (own[at + 2 * cells] + WAKE_SHARE * tangentialSettled - tangentialInduced[at]);
+    }
   }
 
   /** Adds what the sums of blade `b` do to the hub, and its bending. */
@@ -493,6 +539,15 @@ export class BladeElementRotor implements Rotor {
     }
     return energy;
   }
+}
+
+/** Turns a wind from the field's frame into the nacelle's. `out` may be `wind`. */
+function turnIntoNacelle(wind: Float64Array, sinHeading: number, cosHeading: number, out: Float64Array): void {
+  const u = wind[0];
+  const v = wind[1];
+  out[0] = u * cosHeading + v * sinHeading;
+  out[1] = v * cosHeading - u * sinHeading;
+  out[2] = wind[2];
 }
 
 function towerShapeOf({ tower, rotor }: Turbine): TowerShape | undefined {

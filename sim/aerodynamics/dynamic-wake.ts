@@ -12,16 +12,16 @@ const LARGEST_INDUCTION = 0.5;
 const SLOWEST_WIND = 1;
 
 /**
- * τ₁, s.
+ * 1/τ₁, 1/s.
  * @param radius R, m; `wind` free stream U through the rotor, `induced` axial induced velocity, m/s
  */
-export function wakeTime(radius: number, wind: number, induced: number): number {
+export function wakeRate(radius: number, wind: number, induced: number): number {
   const speed = Math.max(Math.abs(wind), SLOWEST_WIND);
-  const a = Math.min(Math.max(induced / speed, 0), LARGEST_INDUCTION);
-  return ((1.1 / (1 - 1.3 * a)) * radius) / speed;
+  const slowed = Math.min(Math.max(induced, 0), LARGEST_INDUCTION * speed);
+  return (speed - 1.3 * slowed) / (1.1 * radius);
 }
 
-/** τ₂/τ₁ at a relative radius r/R. */
-export function wakeTimeRatio(relativeRadius: number): number {
-  return 0.39 - 0.26 * relativeRadius * relativeRadius;
+/** τ₁/τ₂ at a relative radius r/R. */
+export function lateRateRatio(relativeRadius: number): number {
+  return 1 / (0.39 - 0.26 * relativeRadius * relativeRadius);
 }

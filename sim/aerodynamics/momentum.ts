@@ -144,7 +144,10 @@ function prandtl(bladeCount: number, gap: number, reference: number, sin: number
 
 /** The free stream along the axis, per unit of relative speed, for a load N = σC_n at s = sin φ. */
 export function axialStream(load: number, sin: number, lossFactor: number): number {
-  if (sin < 0) return -axialStream(-load, -sin, lossFactor);
+  return sin < 0 ? -downwindStream(-load, -sin, lossFactor) : downwindStream(load, sin, lossFactor);
+}
+
+function downwindStream(load: number, sin: number, lossFactor: number): number {
   const full = 4 * lossFactor * sin * sin;
   // Momentum: N = 4F(V − s)s, up to a = 0.4.
   if (load >= -full && load <= (2 / 3) * full) return load === 0 ? sin : sin + load / (4 * lossFactor * sin);
