@@ -28,6 +28,7 @@ const KINDS = {
   'rotational acceleration': { article: 'a', example: '0.2 rpm/s', si: 'rad/s^2', shown: 'rpm/s' },
   'pitch acceleration': { article: 'a', example: '15 deg/s^2', si: 'rad/s^2', shown: 'deg/s^2' },
   mass: { article: 'a', example: '290 t', si: 'kg', shown: 'kg' },
+  'mass per length': { article: 'a', example: '300 kg/m', si: 'kg/m', shown: 'kg/m' },
   density: { article: 'a', example: '1.225 kg/m^3', si: 'kg/m^3', shown: 'kg/m^3' },
   inertia: { article: 'an', example: '3.2e7 kg m^2', si: 'kg*m^2', shown: 'kg m^2' },
   force: { article: 'a', example: '500 kN', si: 'N', shown: 'kN' },

@@ -1,18 +1,17 @@
 /** Runs a scenario from its data to its summary and recorded channels. Knows no disk. */
-import { type Machine, OPERATING_STATES } from '../controllers/contract.ts';
+import { OPERATING_STATES } from '../controllers/contract.ts';
 import { safetyChain } from '../controllers/protection.ts';
 import { supervisor } from '../controllers/supervisor.ts';
 import type { CoefficientSurface } from '../sim/aerodynamics/coefficient-surface.ts';
-import { surfaceOf, surfaceRotor } from '../sim/aerodynamics/surface-rotor.ts';
+import { surfaceOf } from '../sim/aerodynamics/surface-rotor.ts';
 import { Clock, type RunSetup } from '../sim/clock.ts';
 import type { RunEvent } from '../sim/frame.ts';
-import { Trim } from '../sim/trim.ts';
-import { controllerOf, torqueCurveOf } from './control.ts';
-import { refusal } from './input-error.ts';
+import { controllerOf } from './control.ts';
 import { createLimits } from './limits.ts';
 import { machineOf } from './machine.ts';
 import { createMetrics } from './metrics.ts';
 import { createRecorder, type Recording } from './recorder.ts';
+import { initialState, rotorSetup } from './rotor-choice.ts';
 import type { ScenarioData } from './scenario.ts';
 import { CAUTION, type SpeedLevel, type StateSpan, SUMMARY_FORMAT, type Summary, type Verdict } from './summary.ts';
 import { requireCoverage } from './surface-need.ts';
@@ -31,37 +30,20 @@ const PROGRESS_INTERVAL = 2000;
  * @throws InputError where the rotor's coefficients do not reach, or there is no steady state to start from
  */
 export function setUp(scenario: ScenarioData, surface: CoefficientSurface): RunSetup {
-  const { turbine, wind } = scenario;
-  const machine = machineOf(turbine);
-  const rotor = surfaceRotor(surface);
+  const machine = machineOf(scenario.turbine);
+  const parts = rotorSetup(scenario, surface);
   requireCoverage(scenario, surface);
   return {
-    turbine,
-    rotor,
-    wind,
+    ...parts,
     controller: controllerOf(scenario.controller, machine),
     supervisor: supervisor(scenario.controller.supervisor, machine),
-    protection: safetyChain(scenario.protection, turbine.rotor.bladeCount),
+    protection: safetyChain(scenario.protection, machine.bladeCount),
     events: scenario.events,
     duration: scenario.duration,
     seed: scenario.seed,
     integrator: scenario.integrator,
-    initial: initialOf(scenario, new Trim(turbine, rotor), machine),
+    initial: initialState(scenario, parts, machine),
   };
-}
-
-/** @throws InputError where there is no steady operation at the asked wind */
-function initialOf(scenario: ScenarioData, trim: Trim, machine: Machine): RunSetup['initial'] {
-  const { start, wind, controller, file } = scenario;
-  if (start.kind === 'parked') {
-    return { steady: trim.parked(wind.rotorMean(0)), state: 'parked', brakeApplied: start.brake };
-  }
-  try {
-    const steady = trim.at(start.wind, torqueCurveOf(controller, machine));
-    return { steady, state: 'power production', brakeApplied: false };
-  } catch (cause) {
-    throw refusal(file, `there is no steady state to start from: ${(cause as Error).message}`);
-  }
 }
 
 /**

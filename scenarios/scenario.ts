@@ -4,8 +4,9 @@ import type { ProtectionSettings } from '../controllers/protection.ts';
 import type { PitchLawSettings } from '../controllers/scheduled-pi-pitch.ts';
 import type { SupervisorSettings } from '../controllers/supervisor.ts';
 import type { TorqueLawSettings } from '../controllers/torque-curve.ts';
+import type { BladeElementOptions } from '../sim/aerodynamics/blade-element-rotor.ts';
 import type { ScriptedEvent } from '../sim/scripted-event.ts';
-import type { Turbine } from '../sim/turbine.ts';
+import type { RotorModel, Turbine } from '../sim/turbine.ts';
 import type { Turbulence } from '../sim/wind/turbulence.ts';
 import type { WindField } from '../sim/wind/wind.ts';
 
@@ -22,6 +23,21 @@ export type ControllerData =
       settings: unknown;
       supervisor: SupervisorSettings;
     };
+
+/** How the rotor is computed, and how the nacelle stands to the wind. */
+export interface RotorChoice {
+  /** The turbine's own choice when absent. */
+  model?: RotorModel;
+  bladeElement: BladeElementOptions;
+  nacelle: {
+    /** How far the wind comes off the nacelle's axis at the start, rad, positive towards +y. */
+    yawError: number;
+    /** Whether the yaw drive works; else the nacelle keeps its heading. */
+    followsWind: boolean;
+  };
+  /** Of the wind over sloping ground, rad. */
+  upflow: number;
+}
 
 /** The initial state: steady at a wind speed (m/s), or standing still with the blades at feather and the brake as given. */
 export type StartData = { kind: 'trim'; wind: number } | { kind: 'parked'; brake: boolean };
@@ -72,6 +88,7 @@ export interface ScenarioData {
   wind: WindField;
   /** What the turbulent parts of the wind are made of. */
   turbulence: readonly Turbulence[];
+  rotor: RotorChoice;
   start: StartData;
   /** s */
   duration: number;

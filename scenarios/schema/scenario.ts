@@ -1,12 +1,14 @@
 /** The scenario file. */
 import { z } from 'zod';
 import type { Machine } from '../../controllers/contract.ts';
+import { BLADE_ELEMENT_DEFAULTS } from '../../sim/aerodynamics/blade-element-rotor.ts';
 import { airDensity } from '../../sim/air-density.ts';
-import type { LimitData, ScenarioData, StartData } from '../scenario.ts';
+import type { LimitData, RotorChoice, ScenarioData, StartData } from '../scenario.ts';
 import { event, type WrittenEvent } from './event.ts';
 import { addFault, camelKeys, choice, count, mapping, number, onceDecoded, quantity, tag, text } from './field.ts';
 import { channelName, limit } from './limit.ts';
 import { preamble } from './preamble.ts';
+import { rotorModel } from './turbine.ts';
 import { type WindPart, wind } from './wind.ts';
 
 /** Another file, with values of it overridden where it is used. `load.ts` follows it. */
@@ -96,10 +98,48 @@ const air = mapping({
   .meta({ description: "The air at the site; its density takes the place of the turbine file's." })
   .optional();
 
+const bladeElement = mapping({
+  sections: count('Strips per blade', 5, 200).prefault(BLADE_ELEMENT_DEFAULTS.sections),
+  wake: choice(
+    { dynamic: 'dynamic', equilibrium: 'equilibrium' },
+    "The wake: Øye's filter of the induced velocity, or in balance with the loads at every instant.",
+  ).prefault('dynamic'),
+  section_lift: choice(
+    { steady: 'steady', lagging: 'lagging' },
+    "Lift of a section: that of its polar at once, or with Øye's lag of the separation.",
+  ).prefault('steady'),
+})
+  .prefault({})
+  .transform(camelKeys)
+  .meta({ description: 'Options of the blade-element rotor; the surface rotor ignores them.' });
+
+const nacelle = mapping({
+  yaw_error: quantity(
+    'angle',
+    'How far the wind comes off the axis at the start, positive from the right, looking downwind',
+    {
+      atLeast: -Math.PI,
+      atMost: Math.PI,
+    },
+  ).prefault('0 deg'),
+  yaw: choice({ held: 'held', follows_wind: 'follows wind' }, 'Whether the yaw drive works.').prefault('held'),
+})
+  .prefault({})
+  .transform(({ yaw, yaw_error }): RotorChoice['nacelle'] => ({
+    yawError: yaw_error,
+    followsWind: yaw === 'follows wind',
+  }))
+  .meta({ description: 'How the nacelle stands to the wind.' });
+
+const upflow = quantity('angle', 'How much the wind rises, over sloping ground', {
+  above: -Math.PI / 4,
+  below: Math.PI / 4,
+}).prefault('0 deg');
+
 /** A scenario without the files it refers to. */
 export type ScenarioFileData = Pick<
   ScenarioData,
-  'title' | 'story' | 'start' | 'duration' | 'record' | 'expected' | 'seed' | 'integrator'
+  'title' | 'story' | 'rotor' | 'start' | 'duration' | 'record' | 'expected' | 'seed' | 'integrator'
 > & { airDensity?: number; wind: readonly WindPart[]; events: readonly WrittenEvent[]; limits: readonly LimitData[] };
 
 interface Timed {
@@ -140,6 +180,10 @@ export function scenarioFile(machine: Machine) {
     protection: reference('The protection'),
     air,
     wind,
+    upflow,
+    nacelle,
+    rotor_model: rotorModel,
+    blade_element: bladeElement,
     start,
     duration: quantity('time', 'How long the run lasts', { above: 0 }),
     events: z.array(event(machine)).prefault([]).meta({ description: 'What happens to the machine.' }),
@@ -160,6 +204,12 @@ export function scenarioFile(machine: Machine) {
         story,
         airDensity: file.air?.density,
         wind: file.wind,
+        rotor: {
+          model: file.rotor_model,
+          bladeElement: file.blade_element,
+          nacelle: file.nacelle,
+          upflow: file.upflow,
+        },
         start: file.start,
         duration: file.duration,
         events: file.events,

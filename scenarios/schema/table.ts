@@ -5,7 +5,7 @@ import { exampleOf, parseQuantity, type QuantityKind } from '../quantity.ts';
 import { addFault, mapping } from './field.ts';
 
 /** The keys under which a text names a CSV file; `load.ts` puts the file's table in the text's place. */
-export const TABLE_KEYS: readonly string[] = ['polar', 'stations', 'backup', 'coefficients', 'series'];
+export const TABLE_KEYS: readonly string[] = ['polar', 'stations', 'backup', 'coefficients', 'series', 'mass'];
 
 /** What a column holds: a quantity, plain numbers, or words. */
 export type ColumnKind = QuantityKind | 'number' | 'word';

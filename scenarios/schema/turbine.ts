@@ -1,6 +1,6 @@
 /** The turbine file. */
 import { z } from 'zod';
-import type { DrivetrainData, Turbine } from '../../sim/turbine.ts';
+import type { BladeStructureData, DrivetrainData, Turbine } from '../../sim/turbine.ts';
 import { machineOf } from '../machine.ts';
 import { formatQuantity } from '../quantity.ts';
 import { aerodynamics } from './blade.ts';
@@ -46,11 +46,55 @@ const ratings = mapping({
   .transform(camelKeys)
   .meta({ description: 'What the machine is built for.' });
 
+/** The word that chooses the rotor, in a turbine or a scenario file. */
+export const rotorModel = choice(
+  { surface: 'surface', blade_element: 'blade element' },
+  'How the rotor is computed: as a whole from its coefficient surface, or every section of every blade in time.',
+).optional();
+
+const structure = mapping({
+  mass: table(
+    { radius: { kind: 'length' }, mass: { kind: 'mass per length' } },
+    'Mass per metre of a blade against radius from the rotor axis, linear between rows',
+    2,
+  ),
+  flap: mapping({
+    frequency: quantity('frequency', 'First flap frequency at standstill', positive),
+    damping_ratio: fraction('Structural damping of that mode, fraction of critical', { atLeast: 0, below: 1 }),
+    shape: z
+      .array(z.number())
+      .min(1)
+      .max(8)
+      .meta({ description: 'Mode shape: factors of s^2, s^3, ... of the relative span s; their sum counts as 1.' }),
+  })
+    .transform(camelKeys)
+    .meta({ description: 'First mode out of the rotor plane.' }),
+})
+  .superRefine(
+    onceDecoded(({ mass, flap }, context) => {
+      const row = firstNotRising(mass.radius);
+      if (row >= 0) addFault(context, 'radii must rise from row to row', ['mass', 'rows', row]);
+      const weightless = mass.mass.findIndex((m) => !(m > 0));
+      if (weightless >= 0) addFault(context, 'a mass must be above zero', ['mass', 'rows', weightless]);
+      const sum = flap.shape.reduce((a, b) => a + b, 0);
+      if (!(sum > 0)) addFault(context, 'the factors of the shape must add up to more than zero', ['flap', 'shape']);
+    }),
+  )
+  .transform(({ mass, flap }): BladeStructureData => ({ radius: mass.radius, massPerLength: mass.mass, flap }))
+  .meta({ description: 'Mass of a blade and its first flap mode; without it blades are rigid and weigh nothing.' });
+
+/** Tilts and cones beyond this are slips of the pen. */
+const STEEPEST = Math.PI / 6;
+
 const rotor = mapping({
   blade_count: count('Number of blades', 1, 3),
   radius: quantity('length', 'Tip radius from the rotor axis', positive),
   hub_radius: quantity('length', 'Radius at which the blades start', positive),
   hub_height: quantity('length', 'Height of the rotor axis above ground', positive),
+  tilt: quantity('angle', 'Of the rotor axis, nose up', { atLeast: 0, below: STEEPEST }).optional(),
+  cone: quantity('angle', 'Of the blades, leaning upwind', { above: -STEEPEST, below: STEEPEST }).optional(),
+  overhang: quantity('length', 'From the tower axis to the hub', notNegative).optional(),
+  structure: structure.optional(),
   aerodynamics,
 })
   .superRefine(
@@ -121,9 +165,32 @@ const tower = mapping({
   modal_mass: quantity('mass', 'Generalised mass of the first fore-aft mode at the tower top', positive),
   frequency: quantity('frequency', 'Frequency of that mode', positive),
   damping_ratio: fraction('Damping of that mode, fraction of critical', { atLeast: 0, below: 1 }),
+  side_side: mapping({
+    modal_mass: quantity('mass', 'Generalised mass of the first side-side mode at the tower top', positive),
+    frequency: quantity('frequency', 'Frequency of that mode', positive),
+    damping_ratio: fraction('Damping of that mode, fraction of critical', { atLeast: 0, below: 1 }),
+  })
+    .transform(camelKeys)
+    .meta({ description: 'First side-side mode; without it the tower does not move sideways.' })
+    .optional(),
+  top_diameter: quantity(
+    'length',
+    'Outer diameter at the top; without it the tower throws no shadow',
+    positive,
+  ).optional(),
+  base_diameter: quantity('length', 'Outer diameter at the base; that of the top when absent', positive).optional(),
 })
   .transform(camelKeys)
-  .meta({ description: 'First fore-aft mode of the tower.' });
+  .meta({ description: 'First modes of the tower, and its shape.' });
+
+const yawDrive = mapping({
+  rate: quantity('pitch rate', 'Rate at which it turns the nacelle', positive),
+  dead_band: quantity('angle', 'Filtered vane angle beyond which it starts', { above: 0, below: Math.PI }),
+  vane_time_constant: quantity('time', "Time constant of the vane's filter", positive),
+})
+  .transform(camelKeys)
+  .meta({ description: 'The drive that turns the nacelle into the wind; without one the nacelle keeps its heading.' })
+  .optional();
 
 const pitchDrive = mapping({
   natural_frequency: quantity('frequency', 'Natural frequency from demand to angle', positive),
@@ -244,11 +311,13 @@ function faultsBetweenParts(turbine: Turbine): { path: string[]; message: string
 export const turbineFile = mapping({
   ...preamble('turbine'),
   name: text('What reports call the machine.'),
+  rotor_model: rotorModel,
   ratings,
   air_density: quantity('density', 'Density of the air', positive),
   rotor,
   drivetrain,
   tower,
+  yaw_drive: yawDrive,
   pitch_drive: pitchDrive,
   generator,
   brake,

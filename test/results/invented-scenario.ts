@@ -113,6 +113,11 @@ export function inventedScenario(changes: Partial<ScenarioData> = {}): ScenarioD
     protectionName: 'invented',
     turbulence: [],
     wind: steadyWind({ speed: 12 }),
+    rotor: {
+      bladeElement: { sections: 20, wake: 'dynamic', sectionLift: 'steady' },
+      nacelle: { yawError: 0, followsWind: false },
+      upflow: 0,
+    },
     start: { kind: 'trim', wind: 12 },
     duration: 100,
     events: [],
