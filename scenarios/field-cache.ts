@@ -14,6 +14,9 @@ const METHOD = 1;
 const USUAL_LIMIT = 2 ** 30;
 
 const NAME = /^field-[0-9a-f]{32}\.bin$/;
+/** What a process that was killed while it wrote left behind, and when that is sure, ms. */
+const DRAFT = /^field-.*\.part$/;
+const DRAFT_LIFE = 3.6e6;
 const DIGEST_BYTES = 32;
 
 /** Where fields are kept and how much they may take, bytes. */
@@ -85,20 +88,31 @@ function store({ folder, limit }: FieldCache, file: string, { samples, values }:
     writeFileSync(draft, Buffer.concat([digestOf(body), body]));
     renameSync(draft, file);
   } catch {
-    rmSync(draft, { force: true });
+    remove(draft);
   }
 }
 
-/** Removes the fields that were used longest ago until the others take no more than `limit` bytes. */
+function remove(path: string): void {
+  try {
+    rmSync(path, { force: true });
+  } catch {}
+}
+
+/** Removes the fields that were used longest ago until the others take no more than `limit` bytes, and dead drafts. */
 function makeRoom(folder: string, limit: number): void {
-  const fields = readdirSync(folder)
+  const names = readdirSync(folder);
+  for (const name of names.filter((n) => DRAFT.test(n))) {
+    const path = join(folder, name);
+    if (Date.now() - sizeAndUse(path).used > DRAFT_LIFE) remove(path);
+  }
+  const fields = names
     .filter((name) => NAME.test(name))
     .map((name) => ({ path: join(folder, name), ...sizeAndUse(join(folder, name)) }))
     .sort((a, b) => b.used - a.used);
   let total = 0;
   for (const { path, size } of fields) {
     total += size;
-    if (total > limit) rmSync(path, { force: true });
+    if (total > limit) remove(path);
   }
 }
 
