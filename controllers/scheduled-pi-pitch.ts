@@ -66,7 +66,7 @@ export function scheduledPiPitch(settings: PitchLawSettings, sampleTime: number)
       }
       memory[at + INTEGRAL] = sum;
       memory[at + LAST] = limited;
-      demands.pitch.fill(limited);
+      for (let b = 0; b < demands.pitch.length; b++) demands.pitch[b] = limited;
       demands.pitchAs = 'angle';
     },
   };

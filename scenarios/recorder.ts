@@ -24,7 +24,8 @@ export interface ChannelRecorder {
 }
 
 /**
- * Records the channels that `scenario` asks for, every n-th frame and the last.
+ * Records the channels that `scenario` asks for, every n-th frame and the last. A scenario that names none gets all
+ * that ever have a value.
  * @throws Error when the scenario asks for a channel that frames do not hold.
  */
 export function createRecorder(scenario: ScenarioData): ChannelRecorder {
@@ -34,6 +35,7 @@ export function createRecorder(scenario: ScenarioData): ChannelRecorder {
 class EveryNthFrame implements ChannelRecorder {
   private readonly askedRate: number;
   private readonly recorded: readonly number[];
+  private readonly namesChannels: boolean;
   private readonly latest = { time: Number.NaN, values: new Float64Array(CHANNELS.length), kept: true };
   private time: Float64Array;
   /** SI, one array per recorded channel. */
@@ -47,6 +49,7 @@ class EveryNthFrame implements ChannelRecorder {
   constructor({ record, duration }: ScenarioData) {
     this.askedRate = record.rate;
     this.recorded = recordedChannels(record.channels);
+    this.namesChannels = record.channels !== undefined;
     const expectedRows = Math.ceil(duration * record.rate) + 3;
     this.time = new Float64Array(expectedRows);
     this.columns = this.recorded.map(() => new Float64Array(expectedRows));
@@ -67,7 +70,9 @@ class EveryNthFrame implements ChannelRecorder {
 
   finish(): Recording {
     if (!this.latest.kept) this.keepLatest();
-    const channels = this.recorded.map((index, i) => column(CHANNELS[index], this.columns[i].subarray(0, this.rows)));
+    const channels = this.recorded
+      .map((index, i) => column(CHANNELS[index], this.columns[i].subarray(0, this.rows)))
+      .filter(({ values }) => this.namesChannels || values.some((value) => !Number.isNaN(value)));
     const time = { name: 'time_s', label: 'Time', unit: 's', values: this.time.slice(0, this.rows) };
     return { columns: [time, ...channels], rate: 1 / (this.every * this.frameInterval) };
   }
@@ -99,7 +104,9 @@ function recordedChannels(names: readonly string[] | undefined): number[] {
 
 function column(channel: Channel, si: Float64Array): RecordedColumn {
   const { name, label, unit } = channel;
-  return { name, label, unit, values: si.map((value) => toUnit(channel, value)) };
+  const values = new Float64Array(si.length);
+  for (let row = 0; row < si.length; row++) values[row] = toUnit(channel, si[row]);
+  return { name, label, unit, values };
 }
 
 function twiceAsLong(values: Float64Array): Float64Array {

@@ -128,6 +128,7 @@ export class Clock {
   private readonly microseconds: number;
   private readonly jumps: readonly number[];
   private readonly hasCrossings: boolean;
+  private readonly hasEvents: boolean;
   private nextJump = 0;
   private readonly before: Float64Array;
   private readonly slope: Float64Array;
@@ -187,6 +188,7 @@ export class Clock {
         : rungeKutta(derivative, states, setup.integrator.step);
 
     this.jumps = [...setup.wind.breakpoints(setup.duration), ...scriptedInstants(setup.events)].sort((a, b) => a - b);
+    this.hasEvents = setup.events.length > 0;
     this.hasCrossings = setup.events.some(({ trigger }) => trigger.kind === 'crossing');
     this.fill = createFrameWriter(plant, this.sensors);
     this.frame = { tick: 0, time: 0, values: new Float64Array(CHANNELS.length) };
@@ -276,7 +278,7 @@ export class Clock {
 
   private step(): void {
     const t = this.time;
-    this.fireTimedEvents(t);
+    if (this.hasEvents) this.fireTimedEvents(t);
     this.evaluate(t);
     this.sense(t);
     this.guard(t);
@@ -285,7 +287,7 @@ export class Clock {
     this.actuate(t);
     this.announce(t);
     this.fillFrame(t);
-    this.fireCrossings(t, this.frame.values);
+    if (this.hasCrossings) this.fireCrossings(t, this.frame.values);
     this.frameStream.next(this.frame);
     if (this.tick < this.lastTick) this.integrate(t, this.timeOf(this.tick + 1));
     this.tick++;
@@ -405,8 +407,9 @@ export class Clock {
   /** Tells what has changed at this tick, causes before consequences. */
   private announce(t: number): void {
     const { memory, own, status, setup } = this;
-    this.announceGuards(t);
     const stop = setup.protection.activeStop(this.protectionMemory);
+    // A guard that latches begins a stop: without one there is none to tell of.
+    if (stop >= 0 || memory[own + ANNOUNCED_STOP] !== 0) this.announceGuards(t);
     if (stop + 1 !== memory[own + ANNOUNCED_STOP]) {
       memory[own + ANNOUNCED_STOP] = stop + 1;
       const name = setup.protection.stops[stop];
@@ -495,7 +498,7 @@ export class Clock {
     }
     this.settleBrake(reached, caught);
     if (crossing) this.fire(crossing.event, reached);
-    else if (reached < end) this.fireTimedEvents(reached);
+    else if (this.hasEvents && reached < end) this.fireTimedEvents(reached);
     return reached;
   }
 
@@ -662,7 +665,8 @@ function emptyOrders(bladeCount: number): Orders {
 function clearOrders(orders: Orders): void {
   orders.active = false;
   orders.state = 0;
-  orders.pitch.fill(Number.NaN);
+  // A loop: `fill` costs more than the three numbers, and this runs at every sample.
+  for (let b = 0; b < orders.pitch.length; b++) orders.pitch[b] = Number.NaN;
   orders.torqueFraction = 1;
   orders.brake = false;
 }

@@ -74,6 +74,7 @@ export class Plant {
   private readonly topSlope: number;
   private readonly pitchAt: Int32Array;
   private readonly brakeOnLowSpeedShaft: boolean;
+  private readonly windKeepsItsAxis: boolean;
 
   /** @param tick s between the instants at which demands change */
   constructor(turbine: Turbine, rotor: Rotor, wind: WindField, tick: number) {
@@ -94,6 +95,7 @@ export class Plant {
     this.rotorAt = layout.place('rotor', rotor.stateNames);
     this.accountAt = layout.place('account', ACCOUNT);
     this.pitchAt = Int32Array.from({ length: bladeCount }, (_, b) => this.pitch.angleAt + b);
+    this.windKeepsItsAxis = wind.uniform === true && wind.direction === undefined;
     this.brakeOnLowSpeedShaft = turbine.brake.side === 'low-speed shaft';
     this.loads = emptyLoads(bladeCount);
     this.topSlope = topSlope(turbine.rotor.hubHeight);
@@ -219,6 +221,7 @@ export class Plant {
 
   /** Of the wind at the hub from the field's x axis, rad. */
   private windDirection(t: number): number {
+    if (this.windKeepsItsAxis) return 0;
     this.wind.velocity(t, 0, 0, this.hubWind);
     return Math.atan2(this.hubWind[1], this.hubWind[0]);
   }

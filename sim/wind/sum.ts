@@ -11,6 +11,7 @@ export function addedWind(parts: readonly WindField[]): WindField {
   const count = parts.length;
   const velocityOfPart = new Float64Array(3);
   return {
+    uniform: parts.every((part) => part.uniform === true),
     velocity(t, y, z, out) {
       out.fill(0, 0, 3);
       for (let i = 0; i < count; i++) {
