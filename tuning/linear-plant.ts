@@ -41,8 +41,8 @@ const RELATIVE_STEP = 1e-4;
 /** Slopes of the two sides that differ by more than this share are a bend. */
 const BEND = 0.02;
 
-/** Running totals and what turns without end: they decide nothing that comes after. */
-const LEFT_OUT = /^(drivetrain: azimuth|account: .*|brake: .*)$/;
+/** Running totals and what turns without end decide nothing that comes after; the yaw drive stands still. */
+const LEFT_OUT = /^(drivetrain: azimuth|account: .*|brake: .*|yaw: .*)$/;
 
 /** One coordinate of the linear model: the slots of the plant's state that move together. */
 interface Coordinate {
