@@ -1,5 +1,6 @@
 /**
- * The channels that a run can record, in a stable order. Inside a frame they are SI; `unit` is what files and plots
+ * The channels that a run can record, in a stable order. A frame holds NaN where the machine has no such value (a blade
+ * that is not there, blade moments of a rotor that does not resolve blades, a tower without a side-side mode). Inside a frame they are SI; `unit` is what files and plots
  * show, `factor` its size in SI (a file's value times `factor`, plus `offset`, is the SI value).
  */
 export interface Channel {
@@ -47,6 +48,15 @@ export const CHANNELS: readonly Channel[] = [
   channel('state', 'Operating state', '1'),
   channel('active_guard', 'First latched guard', '1'),
   channel('energy_error_kj', 'Energy account, unexplained', 'kJ', 1e3),
+  channel('yaw_error_deg', 'Wind direction against the nacelle', 'deg', DEGREE),
+  channel('nacelle_heading_deg', 'Heading of the nacelle', 'deg', DEGREE),
+  channel('tower_side_deflection_m', 'Tower-top deflection to the left', 'm'),
+  channel('tower_side_acceleration_m_s2', 'Tower-top acceleration to the left', 'm/s²'),
+  channel('tower_base_side_moment_mn_m', 'Tower-base bending moment, side-side', 'MN m', 1e6),
+  channel('tower_top_tilt_moment_mn_m', 'Tilting moment of the air on the tower top', 'MN m', 1e6),
+  channel('tower_top_yaw_moment_mn_m', 'Yawing moment of the air on the tower top', 'MN m', 1e6),
+  ...perBlade((b) => channel(`flap_moment_${b}_mn_m`, `Flapwise root moment, blade ${b}`, 'MN m', 1e6)),
+  ...perBlade((b) => channel(`edge_moment_${b}_mn_m`, `Edgewise root moment, blade ${b}`, 'MN m', 1e6)),
 ];
 
 /** Index of a channel in a frame, or -1. */

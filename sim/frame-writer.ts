@@ -3,6 +3,8 @@ import type { Plant } from './plant.ts';
 import { electricalPower, type Sensors } from './sensors.ts';
 
 const TURN = 2 * Math.PI;
+/** Blades that the channels have room for. */
+const MOST_BLADES = 3;
 
 /** What the clock itself adds to a frame. */
 export interface ControlStatus {
@@ -22,6 +24,7 @@ export function createFrameWriter(plant: Plant, sensors: Sensors) {
   const d = plant.drivetrain.at;
   const bladeCount = plant.turbine.rotor.bladeCount;
   const hubHeight = plant.turbine.rotor.hubHeight;
+  const resolved = plant.rotor.resolvesBlades;
   const pitch = at.pitch_1_deg;
   const pitchRate = at.pitch_rate_1_deg_s;
   const pitchDemand = at.pitch_demand_1_deg;
@@ -48,6 +51,15 @@ export function createFrameWriter(plant: Plant, sensors: Sensors) {
     state: at.state,
     activeGuard: at.active_guard,
     energyError: at.energy_error_kj,
+    yawError: at.yaw_error_deg,
+    heading: at.nacelle_heading_deg,
+    sideDeflection: at.tower_side_deflection_m,
+    sideAcceleration: at.tower_side_acceleration_m_s2,
+    baseSideMoment: at.tower_base_side_moment_mn_m,
+    tiltMoment: at.tower_top_tilt_moment_mn_m,
+    yawMoment: at.tower_top_yaw_moment_mn_m,
+    flapMoment: at.flap_moment_1_mn_m,
+    edgeMoment: at.edge_moment_1_mn_m,
   };
 
   return function fill(
@@ -86,5 +98,17 @@ export function createFrameWriter(plant: Plant, sensors: Sensors) {
     values[slot.state] = status.state;
     values[slot.activeGuard] = status.activeGuard;
     values[slot.energyError] = plant.energyError(x, storedAtStart);
+    values[slot.yawError] = plant.yawError;
+    values[slot.heading] = x[plant.yaw.at];
+    const sideways = plant.towerSideways;
+    values[slot.sideDeflection] = sideways ? x[sideways.at] : Number.NaN;
+    values[slot.sideAcceleration] = sideways ? plant.accelerations.sideSide : Number.NaN;
+    values[slot.baseSideMoment] = sideways ? sideways.restoringForce(x) * hubHeight : Number.NaN;
+    values[slot.tiltMoment] = resolved ? plant.loads.tiltMoment : Number.NaN;
+    values[slot.yawMoment] = resolved ? plant.loads.yawMoment : Number.NaN;
+    for (let b = 0; b < MOST_BLADES; b++) {
+      values[slot.flapMoment + b] = b < bladeCount ? plant.loads.flapMoment[b] : Number.NaN;
+      values[slot.edgeMoment + b] = b < bladeCount ? plant.loads.edgeMoment[b] : Number.NaN;
+    }
   };
 }

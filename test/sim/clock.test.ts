@@ -263,10 +263,13 @@ describe('A rotor that nothing holds', () => {
 });
 
 describe('A frame', () => {
-  it('holds a finite number in every channel, moving or at rest', () => {
+  /** The surface rotor does not resolve blades, and the test tower has no side-side mode. */
+  const absent = /^(flap|edge)_moment|^tower_(side|base_side|top)/;
+
+  it('holds a finite number in every channel that the machine has, moving or at rest', () => {
     const clock = testRun(14, { wind: GUST, events: STOP_AT_CREST });
     clock.frames.subscribe(({ values, time }) => {
-      const bad = CHANNELS.filter((_, i) => !Number.isFinite(values[i])).map((channel) => channel.name);
+      const bad = CHANNELS.filter(({ name }, i) => Number.isFinite(values[i]) === absent.test(name));
       expect({ time, bad }).toEqual({ time, bad: [] });
     });
     clock.run();
