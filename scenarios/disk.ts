@@ -6,7 +6,7 @@ import { dirname, isAbsolute, join, normalize, relative, resolve, sep } from 'no
 import { fileURLToPath, pathToFileURL } from 'node:url';
 import type { Turbine } from '../sim/turbine.ts';
 import { cachedField } from './field-cache.ts';
-import { type Files, readScenario, readTurbine } from './load.ts';
+import { type Files, readScenario, readTurbine, readWind, readWindParts, type WindData } from './load.ts';
 import type { ScenarioData } from './scenario.ts';
 
 const REASONS: Readonly<Record<string, string>> = {
@@ -70,6 +70,26 @@ export function loadScenario(path: string, { set = [] }: LoadOptions = {}): Prom
  */
 export function loadTurbine(path: string, { set = [] }: LoadOptions = {}): Promise<Turbine> {
   return readTurbine(diskFiles, path, set);
+}
+
+/**
+ * Reads the wind of a scenario file.
+ * @throws InputError with every problem found, each with file, line and column
+ */
+export function loadWind(path: string, { set = [] }: LoadOptions = {}): Promise<WindData> {
+  return readWind(diskFiles, path, set);
+}
+
+/**
+ * Reads a wind from its parts, each written as in a scenario's list.
+ * @param run the turbine's file, how long the wind blows (s), and the seed
+ * @throws InputError with every problem found
+ */
+export function loadWindParts(
+  texts: readonly string[],
+  run: { turbine: string; duration: number; seed: number },
+): Promise<WindData> {
+  return readWindParts(diskFiles, texts, run);
 }
 
 /** The folder of the turbines, controllers, protections and scenarios that come with the package. */

@@ -32,12 +32,13 @@ import { parseAnyQuantity } from './quantity.ts';
 import type { ControllerData, ScenarioData } from './scenario.ts';
 import { type ControllerFileData, controllerFile } from './schema/controller.ts';
 import type { WrittenEvent } from './schema/event.ts';
+import { mapping } from './schema/field.ts';
 import { FILE_KINDS, type FileKind, formatTag } from './schema/file-kind.ts';
 import { protectionFile } from './schema/protection.ts';
-import { type ScenarioFileData, scenarioFile } from './schema/scenario.ts';
+import { scenarioFile } from './schema/scenario.ts';
 import { TABLE_KEYS } from './schema/table.ts';
 import { turbineFile } from './schema/turbine.ts';
-import type { Site, WindPart } from './schema/wind.ts';
+import { type Site, type WindPart, wind } from './schema/wind.ts';
 import { checked } from './validation.ts';
 
 /** Where texts and modules come from. Paths are whatever `resolve` returns. */
@@ -66,14 +67,7 @@ export async function readScenario(files: Files, path: string, sets: readonly st
   const reading = new Reading(files);
   const overrides = reading.overrides(sets);
   const main = files.resolve(path);
-  const opened = await reading.open('scenario', main, { argument: main });
-  const tree =
-    opened &&
-    (await reading.complete(
-      opened,
-      overrides.filter((o) => routeOf(o) === undefined),
-    ));
-  if (!tree) throw reading.error();
+  const tree = await reading.scenario(main, overrides);
 
   const turbine = await reading.part('turbine', tree, overrides, turbineFile);
   if (turbine) reading.checkBlade(turbine.value, turbine.tree);
@@ -89,7 +83,7 @@ export async function readScenario(files: Files, path: string, sets: readonly st
 
   const { airDensity = turbine.value.airDensity, wind: parts, ...rest } = scenario;
   const site = siteOf(turbine.value, scenario, files);
-  const wind = reading.wind(parts, site, tree);
+  const wind = sumWind(reading.windParts(parts, site, tree).map(({ field }) => field));
   const events = reading.events(scenario.events, wind, tree);
   if (reading.hasProblems) throw reading.error();
   return {
@@ -101,7 +95,6 @@ export async function readScenario(files: Files, path: string, sets: readonly st
     protection: protection.value.settings,
     protectionName: protection.value.name,
     wind,
-    turbulence: parts.flatMap((part) => part.turbulence?.(site) ?? []),
     events,
     inputs: reading.inputs(main),
     overrides: sets,
@@ -125,6 +118,74 @@ export async function readTurbine(files: Files, path: string, sets: readonly str
   return turbine;
 }
 
+/** A part of a wind, and what it is made of where it is turbulent. */
+export interface WindPartData {
+  field: WindField;
+  turbulence?: Turbulence;
+}
+
+/** A wind without what it does to a machine. */
+export interface WindData {
+  title: string;
+  turbine: Turbine;
+  site: Site;
+  parts: readonly WindPartData[];
+}
+
+/** How the command line names a part of the wind, for messages. */
+const WIND_OPTION = '--part';
+
+/**
+ * Reads the wind of a scenario; its controller and protection are left alone.
+ * @param sets overrides, as `readScenario`
+ * @throws InputError with every problem found
+ */
+export async function readWind(files: Files, path: string, sets: readonly string[] = []): Promise<WindData> {
+  const reading = new Reading(files);
+  const overrides = reading.overrides(sets);
+  const tree = await reading.scenario(files.resolve(path), overrides);
+  const turbine = await reading.part('turbine', tree, overrides, turbineFile);
+  const scenario = reading.check(tree, scenarioFile(turbine ? machineOf(turbine.value) : UNKNOWN_MACHINE));
+  if (!turbine || !scenario || reading.hasProblems) throw reading.error();
+  const site = siteOf(turbine.value, scenario, files);
+  const parts = reading.windParts(scenario.wind, site, tree);
+  if (reading.hasProblems) throw reading.error();
+  return { title: scenario.title, turbine: turbine.value, site, parts };
+}
+
+/**
+ * Reads a wind from its parts, each written as in a scenario's list.
+ * @param run the turbine's file, how long the wind blows (s), and the seed
+ * @throws InputError with every problem found
+ */
+export async function readWindParts(
+  files: Files,
+  texts: readonly string[],
+  run: { turbine: string; duration: number; seed: number },
+): Promise<WindData> {
+  const turbine = await readTurbine(files, run.turbine);
+  const reading = new Reading(files);
+  const place = { argument: WIND_OPTION };
+  const items = texts.flatMap((text) => reading.windTree(text) ?? []);
+  if (reading.hasProblems) throw reading.error();
+  const list: Tree = { kind: 'list', items, place };
+  const tree = await reading.complete(
+    { kind: 'mapping', place, entries: new Map([['wind', { key: place, value: list }]]) },
+    [],
+  );
+  const written = tree && reading.check(tree, mapping({ wind }));
+  if (!tree || !written || reading.hasProblems) throw reading.error();
+  const site = siteOf(turbine, run, files);
+  const parts = reading.windParts(written.wind, site, tree);
+  written.wind.forEach(({ lasts = run.duration }, index) => {
+    if (lasts >= run.duration) return;
+    const due = `this wind ends at ${lasts} s, before the ${run.duration} s that are asked for`;
+    reading.problem(placeOf(tree, ['wind', index]), due);
+  });
+  if (reading.hasProblems) throw reading.error();
+  return { title: 'Wind', turbine, site, parts };
+}
+
 type PartKind = 'turbine' | 'controller' | 'protection';
 
 /** The file that an override leads into; undefined for the scenario itself. */
@@ -134,7 +195,11 @@ function routeOf({ path }: Override): PartKind | undefined {
 }
 
 /** What the wind's parts may ask of the turbine and the run. */
-function siteOf({ rotor, ratings }: Turbine, { duration, seed }: ScenarioFileData, { turbulence }: Files): Site {
+function siteOf(
+  { rotor, ratings }: Turbine,
+  { duration, seed }: { duration: number; seed: number },
+  { turbulence }: Files,
+): Site {
   return {
     rotorDiameter: 2 * rotor.radius,
     hubHeight: rotor.hubHeight,
@@ -285,17 +350,34 @@ class Reading {
     });
   }
 
-  wind(parts: readonly WindPart[], site: Site, tree: Tree): WindField {
-    const fields = parts.flatMap((part, index) => {
+  /** The scenario's own tree, complete. */
+  async scenario(main: string, overrides: readonly Override[]): Promise<Tree> {
+    const opened = await this.open('scenario', main, { argument: main });
+    const own = overrides.filter((o) => routeOf(o) === undefined);
+    const tree = opened && (await this.complete(opened, own));
+    if (!tree) throw this.error();
+    return tree;
+  }
+
+  windParts(parts: readonly WindPart[], site: Site, tree: Tree): WindPartData[] {
+    return parts.flatMap((part, index) => {
       try {
-        return part.field(site);
+        return { field: part.field(site), turbulence: part.turbulence?.(site) };
       } catch (error) {
         if (!(error instanceof RangeError)) throw error;
         this.problems.push(problemAt(placeOf(tree, ['wind', index]), error.message));
         return [];
       }
     });
-    return sumWind(fields);
+  }
+
+  /** A part of the wind as the command line writes it. */
+  windTree(text: string): Tree | undefined {
+    return this.gather(() => parseYaml(text, WIND_OPTION));
+  }
+
+  problem(place: Place, message: string): void {
+    this.problems.push(problemAt(place, message));
   }
 
   /** Events with gust conditions turned into instants. */

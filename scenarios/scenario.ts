@@ -7,7 +7,6 @@ import type { TorqueLawSettings } from '../controllers/torque-curve.ts';
 import type { BladeElementOptions } from '../sim/aerodynamics/blade-element-rotor.ts';
 import type { ScriptedEvent } from '../sim/scripted-event.ts';
 import type { RotorModel, Turbine } from '../sim/turbine.ts';
-import type { Turbulence } from '../sim/wind/turbulence.ts';
 import type { WindField } from '../sim/wind/wind.ts';
 
 export type LawSettings =
@@ -86,8 +85,6 @@ export interface ScenarioData {
   protection: ProtectionSettings;
   protectionName: string;
   wind: WindField;
-  /** What the turbulent parts of the wind are made of. */
-  turbulence: readonly Turbulence[];
   rotor: RotorChoice;
   start: StartData;
   /** s */

@@ -111,7 +111,6 @@ export function inventedScenario(changes: Partial<ScenarioData> = {}): ScenarioD
       stops: { stop: [] },
     },
     protectionName: 'invented',
-    turbulence: [],
     wind: steadyWind({ speed: 12 }),
     rotor: {
       bladeElement: { sections: 20, wake: 'dynamic', sectionLift: 'steady' },

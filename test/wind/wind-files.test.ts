@@ -1,8 +1,8 @@
 /** The wind as scenario files write it. */
 import { describe, expect, it } from 'vitest';
-import { readScenario } from '../../scenarios/load.ts';
+import { readScenario, readWind, readWindParts } from '../../scenarios/load.ts';
 import { turbulenceField } from '../../sim/wind/turbulence.ts';
-import { memoryFiles, messagesOf, scenarioText } from '../scenarios/memory-files.ts';
+import { memoryFiles, messagesOf, scenarioText, TURBINE } from '../scenarios/memory-files.ts';
 
 const DEGREE = Math.PI / 180;
 const velocity = new Float64Array(3);
@@ -42,11 +42,12 @@ describe('The wind of a scenario', () => {
     { part: '{ kind: turbulence, hub_wind: 12 m/s, intensity: 10 % }', deviation: 1.2 },
     { part: `{ kind: turbulent_extreme_wind, ${IEC}, years: 50 }`, deviation: 4.125 },
   ])('can be turbulent: $part', async ({ part, deviation }) => {
-    const { turbulence, wind } = await read(`  - ${part}`, 'seed: 9');
-    expect(turbulence).toHaveLength(1);
-    expect(turbulence[0]).toMatchObject({ duration: 60, seed: 9, rate: 20, variance: 'exact' });
-    expect(turbulence[0]?.deviation[0]).toBeCloseTo(deviation, 9);
-    expect(wind.rotorMean(10)).not.toBe(wind.rotorMean(20));
+    const text = scenarioText(`wind:\n  - ${part}\nseed: 9`, ['wind']);
+    const { parts } = await readWind(memoryFiles({ 'test.yaml': text }), 'test.yaml');
+    expect(parts).toHaveLength(1);
+    expect(parts[0]?.turbulence).toMatchObject({ duration: 60, seed: 9, rate: 20, variance: 'exact' });
+    expect(parts[0]?.turbulence?.deviation[0]).toBeCloseTo(deviation, 9);
+    expect(parts[0]?.field.rotorMean(10)).not.toBe(parts[0]?.field.rotorMean(20));
   });
 
   it('turns as a whole with a direction change, turbulence and all', async () => {
@@ -99,6 +100,31 @@ describe('The wind of a scenario', () => {
     );
     wind.velocity(1, 0, 30, velocity);
     expect(asked).toEqual([5]);
+  });
+});
+
+describe('A wind that the command line writes', () => {
+  const asked = (texts: string[], duration = 60) =>
+    readWindParts(memoryFiles({}), texts, { turbine: TURBINE, duration, seed: 4 });
+
+  it('has parts as a scenario has them', async () => {
+    const { parts, site } = await asked([
+      '{ kind: steady, speed: 12 m/s }',
+      '{ kind: turbulence, hub_wind: 12 m/s, intensity: 0.1 }',
+    ]);
+    expect(parts.map(({ turbulence }) => turbulence?.seed)).toEqual([undefined, 4]);
+    expect(site.rotorDiameter).toBe(130);
+    expect(parts[0]?.field.rotorMean(0)).toBe(12);
+  });
+
+  it('is told what is wrong with a part, and where in it', async () => {
+    expect((await messagesOf(asked(['{ kind: steady, sped: 12 m/s }'])))[0]).toBe(
+      '--part:1:17: unknown key "sped" - did you mean "speed"?',
+    );
+    expect(await messagesOf(asked(['{ kind: turbulence, hub_wind: 12 m/s, intensity: 0.1, duration: 30 s }']))).toEqual(
+      ['--part:1:1: this wind ends at 30 s, before the 60 s that are asked for'],
+    );
+    expect(await messagesOf(asked(['{ kind: ']))).toHaveLength(1);
   });
 });
 
