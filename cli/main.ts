@@ -5,6 +5,8 @@ import { registerBlade } from './blade.ts';
 import { registerDemo } from './demo.ts';
 import { EXIT, report } from './exit-code.ts';
 import { registerInit } from './init.ts';
+import { registerLinearize } from './linearize.ts';
+import { registerMargins } from './margins.ts';
 import { registerRun } from './run.ts';
 import { registerSchema } from './schema.ts';
 import { registerTrim } from './trim.ts';
@@ -24,6 +26,8 @@ const program = new Command('galehold')
 
 registerRun(program);
 registerTrim(program);
+registerLinearize(program);
+registerMargins(program);
 registerBlade(program);
 registerView(program);
 registerSchema(program);

@@ -18,7 +18,8 @@ export function registerTrim(program: Command): void {
     .summary('list the steady operating points over the wind range')
     .description(
       'List the steady operating point at each wind speed: rotor speed, pitch, tip-speed ratio, coefficients, torque,\n' +
-        'power, thrust, tower deflection. A turbine file is trimmed at its best tip-speed ratio below rated power; a\n' +
+        'power, thrust, tower deflection, the margin to stall, the slopes of torque, power and thrust, and the gain\n' +
+        'schedules that fit them. A turbine file is trimmed at its best tip-speed ratio below rated power; a\n' +
         'scenario file on the torque curve of its controller.',
     )
     .argument('<file>', 'a turbine or a scenario file')

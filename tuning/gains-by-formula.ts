@@ -75,27 +75,3 @@ export function fitSchedule(points: readonly PitchSensitivity[]): ScheduleFit {
   const atZero = meanSlope - rise * meanPitch;
   return { powerPerPitch: atZero, halvingPitch: atZero / rise };
 }
-
-/**
- * The schedule as a table: the factor that keeps the loop's gain at `reference` the same at every `pitch`, by the
- * slopes at the trim points, linear between them and held beyond their ends.
- * @param reference pitch at which the factor is one, rad
- * @param pitch rad, rising
- */
-export function scheduleTable(
-  points: readonly PitchSensitivity[],
-  reference: number,
-  pitch: readonly number[],
-): { pitch: number[]; factor: number[] } {
-  const rising = points.toSorted((a, b) => a.pitch - b.pitch);
-  const slopeAt = (angle: number): number => {
-    const next = rising.findIndex((point) => point.pitch >= angle);
-    if (next === 0) return rising[0].powerPerPitch;
-    if (next < 0) return rising[rising.length - 1].powerPerPitch;
-    const [from, to] = [rising[next - 1], rising[next]];
-    const share = (angle - from.pitch) / (to.pitch - from.pitch);
-    return from.powerPerPitch + share * (to.powerPerPitch - from.powerPerPitch);
-  };
-  const atReference = slopeAt(reference);
-  return { pitch: [...pitch], factor: pitch.map((angle) => atReference / slopeAt(angle)) };
-}
