@@ -387,6 +387,7 @@ export class Clock {
     for (let b = 0; b < blades; b++) plant.pitch.post(this.tick, b, memory[pitchDemandAt + b], isRate, memory);
     plant.pitch.arrive(this.tick, plant.pitch.delayRest > 0, memory);
     plant.pitch.supply(plant.generator.gridConnected(memory), this.x, memory);
+    plant.yaw.decide(this.x, memory);
 
     status.torqueDemand = memory[this.own + LAW_TORQUE] * (orders?.torqueFraction ?? 1);
     plant.generator.demand(status.torqueDemand, memory);

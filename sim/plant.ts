@@ -7,7 +7,7 @@ import { emptyLoads, type Rotor, type RotorCarrier, type RotorLoads, type RotorM
 import { TowerMode, topSlope } from './tower.ts';
 import type { Turbine } from './turbine.ts';
 import type { WindField } from './wind/wind.ts';
-import { Yaw } from './yaw.ts';
+import { fromOpposite, Yaw } from './yaw.ts';
 
 /** A steady state from which the plant can start. */
 export interface SteadyState {
@@ -118,7 +118,8 @@ export class Plant {
     const { yawError = 0, sideForce = 0, rotorStates } = state;
     const rollMoment = state.shaftTorque + this.drivetrain.lossTorque(state.rotorSpeed);
     if (sideways) x[sideways.at] = (sideForce - this.topSlope * rollMoment) / sideways.stiffness;
-    this.yaw.start((this.wind.direction?.(0) ?? 0) - yawError, yawError, x);
+    const direction = this.wind.direction?.(0) ?? 0;
+    this.yaw.start(direction - yawError, direction, x);
     if (rotorStates) x.set(rotorStates, this.rotorAt);
     x.fill(state.pitch, this.pitch.angleAt, this.pitch.angleAt + this.turbine.rotor.bladeCount);
     x[this.generator.at] = state.generatorTorque;
@@ -185,9 +186,9 @@ export class Plant {
       dx[towerSideways.at] = motion.sideSide;
       dx[towerSideways.at + 1] = accelerations.sideSide;
     }
-    this.yawError = this.windDirection(t) - motion.heading;
+    this.yawError = fromOpposite(this.windDirection(t) - motion.heading);
     dx[this.yaw.at] = this.yaw.rate(memory);
-    dx[this.yaw.at + 1] = this.yaw.vaneRate(this.yawError, x);
+    dx[this.yaw.at + 1] = this.yaw.directionRate(this.yawError, x);
     for (let b = 0; b < this.pitchAt.length; b++) {
       dx[this.pitch.angleAt + b] = x[this.pitch.rateAt + b];
       dx[this.pitch.rateAt + b] = this.pitch.acceleration(b, x, memory);

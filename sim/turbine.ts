@@ -141,9 +141,9 @@ export interface TowerData {
 export interface YawDriveData {
   /** rad/s */
   rate: number;
-  /** The drive starts when the filtered vane is further off than this, rad, and stops when it comes past zero. */
+  /** The drive starts when the nacelle is further off the filtered wind direction than this, rad. */
   deadBand: number;
-  /** Time constant of the vane's filter, s. */
+  /** Time constant of that filter, s. */
   vaneTimeConstant: number;
 }
 

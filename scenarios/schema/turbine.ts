@@ -185,8 +185,11 @@ const tower = mapping({
 
 const yawDrive = mapping({
   rate: quantity('pitch rate', 'Rate at which it turns the nacelle', positive),
-  dead_band: quantity('angle', 'Filtered vane angle beyond which it starts', { above: 0, below: Math.PI }),
-  vane_time_constant: quantity('time', "Time constant of the vane's filter", positive),
+  dead_band: quantity('angle', 'Off the filtered wind direction by more than this it starts', {
+    above: 0,
+    below: Math.PI,
+  }),
+  vane_time_constant: quantity('time', 'Time constant of that filter', positive),
 })
   .transform(camelKeys)
   .meta({ description: 'The drive that turns the nacelle into the wind; without one the nacelle keeps its heading.' })
