@@ -10,7 +10,9 @@ import { registerMargins } from './margins.ts';
 import { registerRun } from './run.ts';
 import { registerSchema } from './schema.ts';
 import { registerTrim } from './trim.ts';
+import { registerTune } from './tune.ts';
 import { registerView } from './view.ts';
+import { registerWind } from './wind.ts';
 
 const program = new Command('galehold')
   .description(
@@ -28,7 +30,9 @@ registerRun(program);
 registerTrim(program);
 registerLinearize(program);
 registerMargins(program);
+registerTune(program);
 registerBlade(program);
+registerWind(program);
 registerView(program);
 registerSchema(program);
 registerInit(program);
