@@ -3,11 +3,11 @@ import { dirname, resolve } from 'node:path';
 import { faultText, makeFolders } from '../scenarios/file-fault.ts';
 import { refusal } from '../scenarios/input-error.ts';
 
-/** Writes a text file whole or not at all. Throws what the file system says. */
-export async function writeWholeFile(path: string, text: string): Promise<void> {
+/** Writes a file whole or not at all. Throws what the file system says. */
+export async function writeWholeFile(path: string, content: string | Uint8Array): Promise<void> {
   const draft = `${path}.${process.pid}.part`;
   try {
-    await writeFile(draft, text);
+    await writeFile(draft, content);
     await rename(draft, path);
   } catch (cause) {
     await rm(draft, { force: true });
@@ -15,11 +15,11 @@ export async function writeWholeFile(path: string, text: string): Promise<void> 
   }
 }
 
-/** Writes a text file that the user asked for, and the folders above it, whole or not at all. Throws InputError where that fails. */
-export async function writeAsked(file: string, text: string): Promise<void> {
+/** Writes a file that the user asked for, and the folders above it, whole or not at all. Throws InputError where that fails. */
+export async function writeAsked(file: string, content: string | Uint8Array): Promise<void> {
   try {
     makeFolders(dirname(resolve(file)));
-    await writeWholeFile(file, text);
+    await writeWholeFile(file, content);
   } catch (cause) {
     throw refusal(file, `cannot be written: ${faultText(cause)}`);
   }

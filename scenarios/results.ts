@@ -78,7 +78,8 @@ function shortest(value: number): string {
   return Number.isFinite(value) ? String(Number(value.toPrecision(9))) : '';
 }
 
-function parquetBytes(columns: readonly ResultColumn[]): Uint8Array {
+/** The columns as a Parquet file. */
+export function parquetBytes(columns: readonly ResultColumn[]): Uint8Array {
   const columnData = columns.map(({ name, values }) => ({
     name,
     data: values,

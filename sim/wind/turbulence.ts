@@ -104,7 +104,8 @@ class Amplitudes {
   private readonly modes: AzimuthalModes;
   private readonly streams: readonly number[];
   private readonly draws: Float64Array;
-  private readonly scale: number;
+  /** What every drawn amplitude is multiplied by. */
+  readonly scale: number;
 
   /** @param orders the azimuthal orders to draw, 0 first */
   constructor(
@@ -159,6 +160,14 @@ class Amplitudes {
     }
     return variance > 0 ? turbulence.deviation[component] / Math.sqrt(variance) : 0;
   }
+}
+
+/**
+ * What scaling to an exact variance multiplies the spectrum of a component by; 1 where the variance is left random. A
+ * short draw has more or less of the slow gusts than is due, and the scaling makes up for it at all frequencies alike.
+ */
+export function varianceGain(turbulence: Turbulence, component: Component): number {
+  return new Amplitudes(turbulence, component, [0]).scale ** 2;
 }
 
 /** √(2 S Δf): what a draw of unit mean square is multiplied by, m/s. */
