@@ -4,8 +4,9 @@ import { formulaPolar, type Polar, tablePolar } from './polar.ts';
 /** Nodes over the full circle: one every half degree, so that a look-up needs no search. */
 const NODES = 720;
 const STEP = (2 * Math.PI) / NODES;
-/** Numbers a node keeps: lift, its change per step, drag, its change per step. */
-const STRIDE = 4;
+const STEPS_PER_RADIAN = 1 / STEP;
+/** Numbers a node keeps: the cubics of lift and of drag from it to the next, rising powers of the share of a step. */
+const STRIDE = 8;
 
 /** Lift and drag against angle of attack over the full circle, with continuous slope. */
 export interface Airfoil {
@@ -29,19 +30,25 @@ export function airfoilOf(data: AirfoilData): Airfoil {
 }
 
 function sampled(name: string, polar: Polar): Airfoil {
+  const angles = Array.from({ length: NODES }, (_, i) => -Math.PI + i * STEP);
   const nodes = new Float64Array(NODES * STRIDE);
-  for (let i = 0; i < NODES; i++) {
-    const angle = -Math.PI + i * STEP;
-    nodes[i * STRIDE] = polar.lift(angle);
-    nodes[i * STRIDE + 2] = polar.drag(angle);
-  }
-  for (let i = 0; i < NODES; i++) {
-    const before = ((i + NODES - 1) % NODES) * STRIDE;
-    const after = ((i + 1) % NODES) * STRIDE;
-    nodes[i * STRIDE + 1] = (nodes[after] - nodes[before]) / 2;
-    nodes[i * STRIDE + 3] = (nodes[after + 2] - nodes[before + 2]) / 2;
-  }
+  writeCubics(angles.map(polar.lift), nodes, 0);
+  writeCubics(angles.map(polar.drag), nodes, STRIDE / 2);
   return withStall(name, nodes);
+}
+
+/** The closed cubic curve through `values`, its slope at each that of the parabola through it and its neighbours. */
+function writeCubics(values: readonly number[], nodes: Float64Array, offset: number): void {
+  const value = (i: number): number => values[(i + NODES) % NODES] ?? Number.NaN;
+  const slope = (i: number): number => (value(i + 1) - value(i - 1)) / 2;
+  for (let i = 0; i < NODES; i++) {
+    const at = i * STRIDE + offset;
+    const rise = value(i + 1) - value(i);
+    nodes[at] = value(i);
+    nodes[at + 1] = slope(i);
+    nodes[at + 2] = 3 * rise - 2 * slope(i) - slope(i + 1);
+    nodes[at + 3] = slope(i) + slope(i + 1) - 2 * rise;
+  }
 }
 
 /** The section between two airfoils: `share` of `outer` (0 to 1), the rest of `inner`. */
@@ -59,20 +66,15 @@ export function coefficientsAt(airfoil: Airfoil, angle: number, out: SectionCoef
 
 /** The same from an airfoil's nodes. */
 export function coefficientsFrom(n: Float64Array, angle: number, out: SectionCoefficients): void {
-  const position = (angle + Math.PI) / STEP;
-  const floor = Math.floor(position);
-  const t = position - floor;
-  const node = floor - NODES * Math.floor(floor / NODES);
+  let position = (angle + Math.PI) * STEPS_PER_RADIAN;
+  if (position < 0 || position >= NODES) position -= NODES * Math.floor(position / NODES);
+  // Rounding may lift a position just below zero to the very end, which is the start.
+  if (position === NODES) position = 0;
+  const node = Math.floor(position);
+  const t = position - node;
   const at = node * STRIDE;
-  const next = node === NODES - 1 ? 0 : at + STRIDE;
-  // Cubic Hermite between nodes.
-  const u = 1 - t;
-  const startValue = u * u * (1 + 2 * t);
-  const startSlope = u * u * t;
-  const endValue = t * t * (1 + 2 * u);
-  const endSlope = -t * t * u;
-  out.lift = startValue * n[at] + startSlope * n[at + 1] + endValue * n[next] + endSlope * n[next + 1];
-  out.drag = startValue * n[at + 2] + startSlope * n[at + 3] + endValue * n[next + 2] + endSlope * n[next + 3];
+  out.lift = n[at] + t * (n[at + 1] + t * (n[at + 2] + t * n[at + 3]));
+  out.drag = n[at + 4] + t * (n[at + 5] + t * (n[at + 6] + t * n[at + 7]));
 }
 
 /** Stall is looked for up to this angle: beyond it the flat plate's lift peak at 45° would be mistaken for it. */

@@ -1,5 +1,5 @@
 import { BladeFlap } from '../blade-flap.ts';
-import type { Rotor, RotorCarrier, RotorLoads, RotorMotion } from '../rotor.ts';
+import { emptyLoads, type Rotor, type RotorCarrier, type RotorLoads, type RotorMotion } from '../rotor.ts';
 import type { Turbine } from '../turbine.ts';
 import type { WindField } from '../wind/wind.ts';
 import { coefficientsFrom } from './airfoil.ts';
@@ -103,6 +103,10 @@ export class BladeElementRotor implements Rotor {
    */
   private readonly own: Float64Array;
   private readonly rate: Float64Array;
+  /** The last question (time, motion, pitch; the states are in `own`) and what `loads` answered to it. */
+  private askedWind: WindField | undefined;
+  private readonly asked: Float64Array;
+  private readonly answer: RotorLoads;
   private readonly hubWind = new Float64Array(3);
   private readonly sectionWind = new Float64Array(3);
   private readonly freeNormal: Float64Array;
@@ -113,6 +117,8 @@ export class BladeElementRotor implements Rotor {
   private readonly normalLoad: Float64Array;
   private readonly tangentialLoad: Float64Array;
   private readonly axes = { along: new Float64Array(3), normal: new Float64Array(3), turning: new Float64Array(3) };
+  /** Of every blade: how its normal and its turning go with the tower top's fore-aft and side-side motion. */
+  private readonly carried: Float64Array;
   private readonly coefficients = { lift: 0, drag: 0 };
   private readonly sums = { normal: 0, tangential: 0, normalMoment: 0, tangentialMoment: 0, modal: 0 };
   private readonly steady = emptyFlow();
@@ -171,6 +177,9 @@ export class BladeElementRotor implements Rotor {
       }
       for (let b = 0; b < 2 * this.bladeCount; b++) this.stateScales.push(1);
     }
+    this.carried = new Float64Array(4 * this.bladeCount);
+    this.asked = new Float64Array(6 + this.bladeCount).fill(Number.NaN);
+    this.answer = emptyLoads(this.bladeCount);
     this.own = new Float64Array(this.stateNames.length);
     this.rate = new Float64Array(this.stateNames.length);
     const flow = () => new Float64Array(this.bladeCount * this.sectionCount);
@@ -241,22 +250,61 @@ export class BladeElementRotor implements Rotor {
     dx: { [i: number]: number },
     out: RotorLoads,
   ): void {
-    const { own, rate, bladeCount } = this;
-    for (let i = 0; i < own.length; i++) own[i] = x[stateAt + i];
-    clear(out);
-    wind.velocity(t, 0, 0, this.hubWind);
-    const throughRotor = this.hubWind[0] * Math.cos(motion.heading) + this.hubWind[1] * Math.sin(motion.heading);
-    for (let b = 0; b < bladeCount; b++) {
-      this.turnAxes(b, motion.azimuth);
-      this.meet(b, t, wind, motion);
-      this.drawTriangles(b, x[pitchAt[b]]);
-      this.readPolars(b);
-      if (this.lags) this.lagLift(b);
-      this.sumLoads(b);
-      if (this.isDynamic) this.blowWake(b, throughRotor);
-      this.addBlade(b, motion, out);
+    const { rate, bladeCount, answer } = this;
+    if (this.isNewQuestion(t, wind, motion, x, stateAt, pitchAt)) {
+      clear(answer);
+      wind.velocity(t, 0, 0, this.hubWind);
+      const throughRotor = this.hubWind[0] * Math.cos(motion.heading) + this.hubWind[1] * Math.sin(motion.heading);
+      for (let b = 0; b < bladeCount; b++) {
+        this.turnAxes(b, motion.azimuth);
+        this.meet(b, t, wind, motion);
+        this.drawTriangles(b, x[pitchAt[b]]);
+        this.readPolars(b);
+        if (this.lags) this.lagLift(b);
+        this.sumLoads(b);
+        if (this.isDynamic) this.blowWake(b, throughRotor);
+        this.addBlade(b, motion, answer);
+      }
     }
-    for (let i = 0; i < own.length; i++) dx[stateAt + i] = rate[i];
+    copyLoads(answer, out);
+    for (let i = 0; i < rate.length; i++) dx[stateAt + i] = rate[i];
+  }
+
+  /**
+   * Takes note of the question, and tells whether it differs from the last one. The clock looks at the machine at every
+   * tick and the integrator starts from there: a fifth of all questions are asked twice in a row.
+   */
+  private isNewQuestion(
+    t: number,
+    wind: WindField,
+    motion: RotorMotion,
+    x: ArrayLike<number>,
+    stateAt: number,
+    pitchAt: ArrayLike<number>,
+  ): boolean {
+    const { own, asked } = this;
+    let isNew = wind !== this.askedWind;
+    this.askedWind = wind;
+    const { azimuth, speed, foreAft, sideSide, heading } = motion;
+    isNew ||= asked[0] !== t || asked[1] !== azimuth || asked[2] !== speed;
+    isNew ||= asked[3] !== foreAft || asked[4] !== sideSide || asked[5] !== heading;
+    asked[0] = t;
+    asked[1] = azimuth;
+    asked[2] = speed;
+    asked[3] = foreAft;
+    asked[4] = sideSide;
+    asked[5] = heading;
+    for (let b = 0; b < this.bladeCount; b++) {
+      const pitch = x[pitchAt[b]];
+      if (asked[6 + b] !== pitch) isNew = true;
+      asked[6 + b] = pitch;
+    }
+    for (let i = 0; i < own.length; i++) {
+      const value = x[stateAt + i];
+      if (own[i] !== value) isNew = true;
+      own[i] = value;
+    }
+    return isNew;
   }
 
   /** Axes of blade `b` in the nacelle's frame: along the blade, normal to it downwind, and where it turns. */
@@ -451,6 +499,10 @@ export class BladeElementRotor implements Rotor {
   private addBlade(b: number, motion: RotorMotion, out: RotorLoads): void {
     const { sums, hubRadius, overhang } = this;
     const { along, normal, turning } = this.axes;
+    this.carried[4 * b] = normal[0];
+    this.carried[4 * b + 1] = normal[1];
+    this.carried[4 * b + 2] = turning[0];
+    this.carried[4 * b + 3] = turning[1];
     const atAxis = sums.tangentialMoment + hubRadius * sums.tangential;
     const normalAtAxis = sums.normalMoment + hubRadius * sums.normal;
     const forceX = sums.normal * normal[0] + sums.tangential * turning[0];
@@ -502,21 +554,19 @@ export class BladeElementRotor implements Rotor {
 
   follow(
     carrier: RotorCarrier,
-    motion: RotorMotion,
+    _motion: RotorMotion,
     _x: ArrayLike<number>,
     stateAt: number,
     dx: { [i: number]: number },
     out: RotorLoads,
   ): void {
-    const { flap, cosCone } = this;
+    const { flap, cosCone, carried } = this;
     if (!flap) return;
-    const { normal, turning } = this.axes;
     for (let b = 0; b < this.bladeCount; b++) {
-      this.turnAxes(b, motion.azimuth);
       const at = stateAt + this.flapRateAt + b;
       dx[at] -= (flap.towerCoupling / flap.modalMass) * carrier.foreAft;
-      const normalAcceleration = carrier.foreAft * normal[0] + carrier.sideSide * normal[1];
-      const turningAcceleration = carrier.foreAft * turning[0] + carrier.sideSide * turning[1];
+      const normalAcceleration = carrier.foreAft * carried[4 * b] + carrier.sideSide * carried[4 * b + 1];
+      const turningAcceleration = carrier.foreAft * carried[4 * b + 2] + carrier.sideSide * carried[4 * b + 3];
       out.flapMoment[b] -= flap.massMoment * normalAcceleration + flap.shapeMoment * dx[at];
       out.edgeMoment[b] -= flap.massMoment * turningAcceleration + flap.inertiaMoment * cosCone * carrier.speed;
     }
@@ -569,4 +619,22 @@ function clear(out: RotorLoads): void {
   out.inertiaChange = 0;
   out.inertialThrust = 0;
   out.massChange = 0;
+}
+
+function copyLoads(from: RotorLoads, to: RotorLoads): void {
+  to.torque = from.torque;
+  to.thrust = from.thrust;
+  to.sideForce = from.sideForce;
+  to.tiltMoment = from.tiltMoment;
+  to.yawMoment = from.yawMoment;
+  to.bendingPower = from.bendingPower;
+  to.lostPower = from.lostPower;
+  to.inertialTorque = from.inertialTorque;
+  to.inertiaChange = from.inertiaChange;
+  to.inertialThrust = from.inertialThrust;
+  to.massChange = from.massChange;
+  for (let b = 0; b < from.flapMoment.length; b++) {
+    to.flapMoment[b] = from.flapMoment[b];
+    to.edgeMoment[b] = from.edgeMoment[b];
+  }
 }
