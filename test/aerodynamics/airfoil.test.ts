@@ -67,7 +67,8 @@ describe('an airfoil by formula', () => {
         expect(Math.abs(slopeAfter - slopeBefore)).toBeLessThan(1e-4);
       }
     }
-    expect(at(airfoil, 540.25)).toEqual(at(airfoil, 180.25));
+    expect(at(airfoil, 540.25).lift).toBeCloseTo(at(airfoil, 180.25).lift, 12);
+    expect(at(airfoil, 540.25).drag).toBeCloseTo(at(airfoil, 180.25).drag, 12);
   });
 
   it('more camber than the maximum lift allows is refused, and the message says what to change', () => {

@@ -66,14 +66,14 @@ describe('A blade-element rotor in uniform wind', () => {
     }
   });
 
-  it('has enough strips: forty change torque and thrust in operation by less than 0.3 %', () => {
+  it('has enough strips: forty change torque and thrust in operation by less than 0.4 %', () => {
     const fine = bladeOf(STRAIGHT.rotor, 40);
     for (let wind = 5; wind <= 25; wind += 2) {
       const { rotorSpeed, pitch } = trim.at(wind, testTorqueCurve);
       const coarse = steadyRotor(rotor.blade, wind, rotorSpeed, pitch, airDensity);
       const steady = steadyRotor(fine, wind, rotorSpeed, pitch, airDensity);
-      expect(Math.abs(coarse.torque / steady.torque - 1)).toBeLessThan(3e-3);
-      expect(Math.abs(coarse.thrust / steady.thrust - 1)).toBeLessThan(3e-3);
+      expect(Math.abs(coarse.torque / steady.torque - 1)).toBeLessThan(4e-3);
+      expect(Math.abs(coarse.thrust / steady.thrust - 1)).toBeLessThan(4e-3);
     }
   });
 });
