@@ -69,9 +69,16 @@ describe('the view command', () => {
   });
 
   test('leaves nothing behind where the page cannot be written', async () => {
-    const out = join(parent, 'no-such-folder', 'view.html');
-    await expect(view(store('one'), '--out', out)).rejects.toThrow(`${out}: cannot be written`);
+    const folder = store('one');
+    const out = join(folder, 'summary.json', 'view.html');
+    await expect(view(folder, '--out', out)).rejects.toThrow(`${out}: cannot be written: a part of the path is a file`);
     expect(await readdir(parent)).toEqual(['one']);
+  });
+
+  test('makes the folder that the page is to lie in', async () => {
+    const out = join(parent, 'pages', 'view.html');
+    await view(store('one'), '--out', out);
+    expect(await readFile(out, 'utf8')).toContain('</html>');
   });
 
   test('leaves no draft behind where a folder has the name of the page', async () => {
