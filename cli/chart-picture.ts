@@ -45,6 +45,7 @@ const WIDTH = 640;
 const HEIGHT = 400;
 const PLOT = { left: 74, top: 40, right: 16, bottom: 54 };
 const LEGEND_ROW = 18;
+const LEGEND_GAP = 10;
 const LEGEND_COLUMN = 185;
 
 interface Axis {
@@ -62,7 +63,7 @@ export function chartPicture(chart: Chart): string {
   const legendHeight = Math.ceil(shown.length / perRow) * LEGEND_ROW;
   const plotWidth = WIDTH - PLOT.left - PLOT.right;
   const plotHeight = HEIGHT - PLOT.top - PLOT.bottom;
-  const height = HEIGHT + legendHeight;
+  const height = HEIGHT + LEGEND_GAP + legendHeight;
   const xValues = chart.lines.flatMap(({ x }) => Array.from(x));
   const yValues = chart.lines.flatMap(({ y }) => Array.from(y));
   let xRange = chart.xRange ?? rangeOf(xValues, chart.xLog);
@@ -129,7 +130,7 @@ function drawn(line: ChartLine, colour: number, x: Axis, y: Axis): string {
 
 function legendEntry(line: ChartLine, place: number, index: number, perRow: number): string {
   const left = PLOT.left + (index % perRow) * LEGEND_COLUMN;
-  const top = HEIGHT + Math.floor(index / perRow) * LEGEND_ROW - 2;
+  const top = HEIGHT + LEGEND_GAP + Math.floor(index / perRow) * LEGEND_ROW;
   const colour = `var(--line-${(line.colour ?? place) % COLOURS})`;
   const mark = line.points
     ? `<circle cx="${left + 11}" cy="${top - 4}" r="3.5" fill="${colour}"/>`

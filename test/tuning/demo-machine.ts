@@ -1,0 +1,85 @@
+/** The shipped machine and its controller, as the tuning tests take them: quiet sensors, other gains at will. */
+import type { GainScheduleSettings } from '../../controllers/gain-schedule.ts';
+import { controllerOf } from '../../scenarios/control.ts';
+import { loadScenario, shippedFolder } from '../../scenarios/disk.ts';
+import { machineOf } from '../../scenarios/machine.ts';
+import { setUp } from '../../scenarios/run.ts';
+import type { ControllerData, ScenarioData } from '../../scenarios/scenario.ts';
+import { cachedSurface } from '../../scenarios/surface-cache.ts';
+import { surfaceRotor } from '../../sim/aerodynamics/surface-rotor.ts';
+import { channelIndex } from '../../sim/channels.ts';
+import { Clock, type RunSetup } from '../../sim/clock.ts';
+import { Trim, type TrimPoint } from '../../sim/trim.ts';
+import { steadyWind } from '../../sim/wind/steady.ts';
+import type { WindField } from '../../sim/wind/wind.ts';
+import type { Gains } from '../../tuning/gains-by-formula.ts';
+import { linearPlant } from '../../tuning/linear-plant.ts';
+import { withQuietSensors } from '../../tuning/measured-loop.ts';
+import { sampledLaw } from '../../tuning/sampled-law.ts';
+import { SampledLoop } from '../../tuning/sampled-loop.ts';
+
+export const SCENARIO_FILE = `${shippedFolder()}/04-operating-gust.yaml`;
+
+const shipped = await loadScenario(SCENARIO_FILE);
+export const TURBINE = withQuietSensors(shipped.turbine);
+export const MACHINE = machineOf(TURBINE);
+export const SURFACE = cachedSurface(TURBINE);
+export const ROTOR = surfaceRotor(SURFACE);
+export const TRIM = new Trim(TURBINE, ROTOR);
+export const FILTER = 1.5;
+export const FLAT: GainScheduleSettings = { kind: 'constant' };
+
+/** The shipped controller with other gains; constant torque above rated leaves the shaft its own damping. */
+export function controllerData(
+  gains?: Gains,
+  schedule?: GainScheduleSettings,
+  aboveRated: 'constant power' | 'constant torque' = 'constant power',
+): ControllerData {
+  const { controller } = shipped;
+  if (controller.kind !== 'laws') throw new Error('the shipped controller has become a module');
+  const laws = controller.laws.map((law) =>
+    law.law === 'scheduled PI pitch'
+      ? { ...law, ...gains, schedule: schedule ?? law.schedule }
+      : law.law === 'torque curve'
+        ? { ...law, aboveRated }
+        : law,
+  );
+  return { ...controller, laws };
+}
+
+export function loopAt(point: TrimPoint, controller: ControllerData): SampledLoop {
+  const law = sampledLaw(controllerOf(controller, MACHINE), MACHINE, point);
+  return new SampledLoop(TURBINE, linearPlant(TURBINE, ROTOR, point, law.pitchAs), law);
+}
+
+/** A run's setup from trim at `windSpeed`, m/s, for `duration`, s. */
+export function runSetup(
+  windSpeed: number,
+  controller: ControllerData,
+  duration: number,
+  wind: WindField = steadyWind({ speed: windSpeed }),
+): RunSetup {
+  const scenario: ScenarioData = {
+    ...shipped,
+    turbine: TURBINE,
+    controller,
+    wind,
+    start: { kind: 'trim', wind: windSpeed },
+    duration,
+    events: [],
+    integrator: { kind: 'runge-kutta', step: 0.01 },
+  };
+  return setUp(scenario, SURFACE);
+}
+
+/** One channel of a run, SI, every `every` ticks. */
+export function channelOf(setup: RunSetup, channel: string, every = 1): number[] {
+  const clock = new Clock(setup);
+  const index = channelIndex(channel);
+  const values: number[] = [];
+  clock.frames.subscribe(({ tick, values: frame }) => {
+    if (tick % every === 0) values.push(frame[index]);
+  });
+  clock.run();
+  return values;
+}
