@@ -4,7 +4,7 @@ import { bladeText, pointText, totalsText } from './blade-text.ts';
 import type { BladeView } from './blade-view.ts';
 
 /** Okabe and Ito, *Color Universal Design*, 2008. */
-const INK = '#000000';
+export const INK = '#000000';
 const BLUE = '#0072B2';
 const SKY = '#56B4E9';
 const GREEN = '#009E73';
@@ -30,16 +30,16 @@ const MARGIN_BANDS: readonly MarginBand[] = [
 ];
 const NO_LIFT: MarginBand = { below: Number.NaN, colour: GREY, words: 'does not lift' };
 
-function bandOf(station: VelocityTriangle): MarginBand {
+function bandOf(station: DrawnTriangle): MarginBand {
   const { stallMargin } = station;
   return stallMargin === undefined ? NO_LIFT : (MARGIN_BANDS.find((b) => stallMargin < b.below) ?? NO_LIFT);
 }
 
 const WIDTH = 1200;
-const MARGIN = 30;
+export const MARGIN = 30;
 const TRIANGLE_STATIONS = [0.15, 0.32, 0.49, 0.66, 0.82, 0.96];
 const PANELS_A_ROW = 3;
-const PANEL_WIDTH = (WIDTH - 2 * MARGIN) / PANELS_A_ROW;
+export const PANEL_WIDTH = (WIDTH - 2 * MARGIN) / PANELS_A_ROW;
 const PANEL_TOP = 150;
 const CURVE_STATIONS = 120;
 const CURVE_HEIGHT = 250;
@@ -54,7 +54,9 @@ interface Point {
 export function bladePicture(view: BladeView): string {
   const span = view.blade.radius - view.blade.hubRadius;
   const radii = TRIANGLE_STATIONS.map((share) => view.blade.hubRadius + share * span);
-  const panels = velocityTriangles(view.blade, radii, view.point).map((station) => trianglePanel(view, station));
+  const panels = velocityTriangles(view.blade, radii, view.point).map((station) =>
+    trianglePanel(station, view.point.pitch, view.blade.radius),
+  );
   const rows: Panel[][] = [];
   for (let i = 0; i < panels.length; i += PANELS_A_ROW) rows.push(panels.slice(i, i + PANELS_A_ROW));
 
@@ -90,12 +92,27 @@ function heading(view: BladeView): string {
     'Each triangle has its own scale, shown by its bar. Induced speeds are included.',
   ];
   return [
-    text({ x: MARGIN, y: 34 }, `${view.turbine.name}: the flow along the blade`, { size: 22, weight: 600 }),
-    ...lines.map((line, i) => text({ x: MARGIN, y: 58 + 19 * i }, line, { colour: i < 2 ? INK : GREY, size: 13 })),
+    svgText({ x: MARGIN, y: 34 }, `${view.turbine.name}: the flow along the blade`, { size: 22, weight: 600 }),
+    ...lines.map((line, i) => svgText({ x: MARGIN, y: 58 + 19 * i }, line, { colour: i < 2 ? INK : GREY, size: 13 })),
   ].join('\n');
 }
 
-interface Panel {
+/** What a triangle's drawing needs to know of its station. */
+export type DrawnTriangle = Pick<
+  VelocityTriangle,
+  | 'radius'
+  | 'chord'
+  | 'twist'
+  | 'inflowAngle'
+  | 'angleOfAttack'
+  | 'normalSpeed'
+  | 'tangentialSpeed'
+  | 'relativeSpeed'
+  | 'stall'
+  | 'stallMargin'
+>;
+
+export interface Panel {
   svg: string;
   height: number;
 }
@@ -107,9 +124,9 @@ const PANEL_HEAD = 74;
 const SECTOR = CHORD + 12;
 
 /** One station: the triangle left of the leading edge, the chord right of it. */
-function trianglePanel(view: BladeView, station: VelocityTriangle): Panel {
+export function trianglePanel(station: DrawnTriangle, pitch: number, tipRadius: number): Panel {
   const { inflowAngle, angleOfAttack, normalSpeed, tangentialSpeed, relativeSpeed } = station;
-  const setting = station.twist + view.point.pitch;
+  const setting = station.twist + pitch;
   const along = (from: Point, angle: number, length: number): Point => ({
     x: from.x + length * Math.cos(angle),
     y: from.y - length * Math.sin(angle),
@@ -129,7 +146,7 @@ function trianglePanel(view: BladeView, station: VelocityTriangle): Panel {
 
   const band = bandOf(station);
   const margin = station.stallMargin === undefined ? '' : `, margin ${degrees(station.stallMargin)}`;
-  const percent = ((100 * station.radius) / view.blade.radius).toFixed(0);
+  const percent = ((100 * station.radius) / tipRadius).toFixed(0);
   const reference = roundNumber(0.3 * relativeSpeed);
   const barLength = relativeSpeed > 0 ? (reference / relativeSpeed) * HYPOTENUSE : 0;
   const barAt = { x: tail.x, y: lowest + 10 };
@@ -153,28 +170,31 @@ function trianglePanel(view: BladeView, station: VelocityTriangle): Panel {
     arrow(corner, origin, SKY, 2.5),
     arrow(tail, origin, BLUE, 3),
     arc(tail, 46, 0, inflowAngle, GREY, 1.5),
-    text(inflowName, `φ ${degrees(inflowAngle)}`, { colour: GREY }),
-    text({ x: corner.x, y: tail.y + 18 }, `v_t ${tangentialSpeed.toFixed(1)}`, { anchor: 'end' }),
-    text({ x: corner.x + normalSide, y: (corner.y + origin.y) / 2 + 12 }, `v_n ${normalSpeed.toFixed(1)}`, {
+    svgText(inflowName, `φ ${degrees(inflowAngle)}`, { colour: GREY }),
+    svgText({ x: corner.x, y: tail.y + 18 }, `v_t ${tangentialSpeed.toFixed(1)}`, { anchor: 'end' }),
+    svgText({ x: corner.x + normalSide, y: (corner.y + origin.y) / 2 + 12 }, `v_n ${normalSpeed.toFixed(1)}`, {
       anchor: normalSide > 0 ? 'start' : 'end',
     }),
-    text(speedName, `W ${relativeSpeed.toFixed(1)}`, {
+    svgText(speedName, `W ${relativeSpeed.toFixed(1)}`, {
       anchor: steep ? 'end' : 'middle',
       colour: BLUE,
       weight: 600,
     }),
-    text({ x: windOn.x, y: windOn.y - 8 }, `α ${degrees(angleOfAttack)}`, { weight: 600, anchor: 'middle' }),
-    text(chordName, 'chord line', { size: 12, anchor: steep ? 'start' : 'middle' }),
+    svgText({ x: windOn.x, y: windOn.y - 8 }, `α ${degrees(angleOfAttack)}`, { weight: 600, anchor: 'middle' }),
+    svgText(chordName, 'chord line', { size: 12, anchor: steep ? 'start' : 'middle' }),
     line(barAt, { x: barAt.x + barLength, y: barAt.y }, INK, 3),
-    text({ x: barAt.x + barLength + 8, y: barAt.y + 4 }, `${reference} m/s`, { size: 12 }),
+    svgText({ x: barAt.x + barLength + 8, y: barAt.y + 4 }, `${reference} m/s`, { size: 12 }),
   ];
   const svg = [
-    text({ x: 10, y: 20 }, `${station.radius.toFixed(1)} m, ${percent} % of the tip radius`, { size: 15, weight: 600 }),
+    svgText({ x: 10, y: 20 }, `${station.radius.toFixed(1)} m, ${percent} % of the tip radius`, {
+      size: 15,
+      weight: 600,
+    }),
     `<rect x="10" y="29" width="14" height="14" fill="${band.colour}"/>`,
-    text({ x: 30, y: 41 }, `${band.words}${margin}`, { size: 13 }),
-    text(
+    svgText({ x: 30, y: 41 }, `${band.words}${margin}`, { size: 13 }),
+    svgText(
       { x: 10, y: 62 },
-      `chord ${station.chord.toFixed(2)} m, twist ${degrees(station.twist)}, pitch ${degrees(view.point.pitch)}`,
+      `chord ${station.chord.toFixed(2)} m, twist ${degrees(station.twist)}, pitch ${degrees(pitch)}`,
       { size: 13, colour: GREY },
     ),
     `<g transform="translate(${px(place.x)} ${px(place.y)})">${drawing.join('')}</g>`,
@@ -219,12 +239,12 @@ function attackCurve(view: BladeView, top: number): string {
   const grid: string[] = [];
   for (let angle = Math.ceil(low / step - 1e-9) * step; angle <= high + 1e-9; angle += step) {
     grid.push(line({ x: left, y: y(angle) }, { x: right, y: y(angle) }, Math.abs(angle) < 1e-9 ? GREY : '#dddddd', 1));
-    grid.push(text({ x: left - 8, y: y(angle) + 5 }, (angle / DEGREE).toFixed(0), { anchor: 'end', size: 12 }));
+    grid.push(svgText({ x: left - 8, y: y(angle) + 5 }, (angle / DEGREE).toFixed(0), { anchor: 'end', size: 12 }));
   }
   const metres = roundNumber(blade.radius / 5);
   for (let at = 0; at <= blade.radius; at += metres) {
     grid.push(line({ x: x(at), y: top + CURVE_HEIGHT }, { x: x(at), y: top + CURVE_HEIGHT + 5 }, INK, 1));
-    grid.push(text({ x: x(at), y: top + CURVE_HEIGHT + 20 }, String(at), { anchor: 'middle', size: 12 }));
+    grid.push(svgText({ x: x(at), y: top + CURVE_HEIGHT + 20 }, String(at), { anchor: 'middle', size: 12 }));
   }
   const stallPath = (side: 'positive' | 'negative'): string =>
     `<path d="${path(lifting, (s) => s.stall?.[side] ?? 0)}" fill="none" stroke="${INK}" stroke-width="1.5" stroke-dasharray="7 4"/>`;
@@ -236,19 +256,19 @@ function attackCurve(view: BladeView, top: number): string {
     outermost?.stall === undefined
       ? []
       : [
-          text({ x: right + 8, y: y(outermost.stall.positive) + 5 }, 'stall, largest lift', { size: 12 }),
-          text({ x: right + 8, y: y(outermost.stall.negative) + 5 }, 'stall, most negative lift', { size: 12 }),
+          svgText({ x: right + 8, y: y(outermost.stall.positive) + 5 }, 'stall, largest lift', { size: 12 }),
+          svgText({ x: right + 8, y: y(outermost.stall.negative) + 5 }, 'stall, most negative lift', { size: 12 }),
         ];
   const legend = [...MARGIN_BANDS, NO_LIFT].map((band, i) => {
     const at = left + 170 * i;
     return (
       `<circle cx="${px(at)}" cy="${px(top + CURVE_HEIGHT + 50)}" r="5" fill="${band.colour}"/>` +
-      text({ x: at + 10, y: top + CURVE_HEIGHT + 55 }, band.words, { size: 12 })
+      svgText({ x: at + 10, y: top + CURVE_HEIGHT + 55 }, band.words, { size: 12 })
     );
   });
   return [
     `<clipPath id="curve"><rect x="${px(left - 6)}" y="${px(top - 6)}" width="${px(right - left + 12)}" height="${CURVE_HEIGHT + 12}"/></clipPath>`,
-    text(
+    svgText(
       { x: MARGIN, y: top - 20 },
       'Angle of attack along the blade (dots) between the angles of stall (dashed): degrees against radius in m',
       {
@@ -295,15 +315,16 @@ interface TextStyle {
   anchor?: 'start' | 'middle' | 'end';
 }
 
-const px = (value: number): string => String(Math.round(10 * value) / 10);
-const degrees = (angle: number): string => `${(angle / DEGREE).toFixed(1)}°`;
+export const px = (value: number): string => String(Math.round(10 * value) / 10);
+/** To a tenth; what rounds to nothing has no sign. */
+export const degrees = (angle: number): string => `${(Math.round((10 * angle) / DEGREE) / 10 + 0).toFixed(1)}°`;
 
-function escaped(words: string): string {
+export function escaped(words: string): string {
   return words.replaceAll('&', '&amp;').replaceAll('<', '&lt;').replaceAll('>', '&gt;');
 }
 
 /** Words; "v_t" and its like get their index set low. */
-function text(at: Point, words: string, style: TextStyle = {}): string {
+export function svgText(at: Point, words: string, style: TextStyle = {}): string {
   const { size = 14, weight = 400, colour = INK, anchor = 'start' } = style;
   const indexed = escaped(words).replace(
     /\b([A-Za-z])_([a-z])\b/g,

@@ -34,7 +34,8 @@ export async function runScenarios(files: readonly string[], options: RunOptions
       const result = runScenario(scenario, surfaceFor(scenario, surfaces), (part) =>
         progress.show(i + part, scenario.name),
       );
-      writeResult(join(options.out, scenario.name), { summary: result.summary, columns: result.recording.columns });
+      const { summary, recording, sections } = result;
+      writeResult(join(options.out, scenario.name), { summary, columns: recording.columns, sections });
       results.push(result);
       if (!options.json) progress.print(verdictText(result.summary));
     } catch (error) {

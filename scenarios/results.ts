@@ -1,15 +1,25 @@
-/** Writes the results folder of a run: `summary.json`, `channels.csv`, `channels.parquet`. Node only. */
+/** Writes the results folder of a run: `summary.json`, `channels.csv`, `channels.parquet`, and the air at the blades. Node only. */
 import { randomUUID } from 'node:crypto';
 import { mkdirSync, readdirSync, readFileSync, renameSync, rmSync, statSync, writeFileSync } from 'node:fs';
 import { basename, dirname, join, resolve } from 'node:path';
 import { parquetWriteBuffer } from 'hyparquet-writer';
 import { faultText, makeFolders } from './file-fault.ts';
+import type { SectionRecording } from './section-recorder.ts';
 import { SUMMARY_FORMAT, type Summary } from './summary.ts';
 
 export const SUMMARY_FILE = 'summary.json';
 export const CHANNELS_CSV_FILE = 'channels.csv';
 export const CHANNELS_PARQUET_FILE = 'channels.parquet';
-const RESULT_FILES: readonly string[] = [SUMMARY_FILE, CHANNELS_CSV_FILE, CHANNELS_PARQUET_FILE];
+/** Of a run with the blade-element rotor: the air at stations of every blade, and what stands at the stations. */
+export const SECTIONS_FILE = 'sections.csv';
+export const STATIONS_FILE = 'stations.csv';
+const RESULT_FILES: readonly string[] = [
+  SUMMARY_FILE,
+  CHANNELS_CSV_FILE,
+  CHANNELS_PARQUET_FILE,
+  SECTIONS_FILE,
+  STATIONS_FILE,
+];
 
 /** A column of the result, `time_s` first; all of one length. NaN where a channel has no value. */
 export interface ResultColumn {
@@ -20,6 +30,7 @@ export interface ResultColumn {
 export interface Result {
   readonly summary: Summary;
   readonly columns: readonly ResultColumn[];
+  readonly sections?: SectionRecording;
 }
 
 /** A results folder that cannot be written, in one sentence for the user. Commands end with exit code 2. */
@@ -49,6 +60,10 @@ export function writeResult(folder: string, result: Result): void {
     writeDurably(join(draft, SUMMARY_FILE), summaryText(result.summary));
     writeDurably(join(draft, CHANNELS_CSV_FILE), csvText(result.columns));
     writeDurably(join(draft, CHANNELS_PARQUET_FILE), parquetBytes(result.columns));
+    if (result.sections) {
+      writeDurably(join(draft, SECTIONS_FILE), csvText(result.sections.columns, SECTION_DIGITS));
+      writeDurably(join(draft, STATIONS_FILE), csvText(result.sections.stations, SECTION_DIGITS));
+    }
     moveIntoPlace(draft, place);
   } catch (cause) {
     discard(draft);
@@ -61,21 +76,24 @@ export function summaryText(summary: Summary): string {
   return `${JSON.stringify(summary, null, 2)}\n`;
 }
 
-/** A header line, then a line a row; nine significant digits, shortest form, nothing where there is no value. */
-export function csvText(columns: readonly ResultColumn[]): string {
+/** Enough for a picture of the air at a section. */
+const SECTION_DIGITS = 6;
+
+/** A header line, then a line a row; so many significant digits, shortest form, nothing where there is no value. */
+export function csvText(columns: readonly ResultColumn[], digits = 9): string {
   const rows = columns[0]?.values.length ?? 0;
   const lines = [columns.map(({ name }) => name).join(',')];
   for (let row = 0; row < rows; row++) {
-    let line = shortest(columns[0].values[row]);
-    for (let column = 1; column < columns.length; column++) line += `,${shortest(columns[column].values[row])}`;
+    let line = shortest(columns[0].values[row], digits);
+    for (let column = 1; column < columns.length; column++) line += `,${shortest(columns[column].values[row], digits)}`;
     lines.push(line);
   }
   lines.push('');
   return lines.join('\n');
 }
 
-function shortest(value: number): string {
-  return Number.isFinite(value) ? String(Number(value.toPrecision(9))) : '';
+function shortest(value: number, digits: number): string {
+  return Number.isFinite(value) ? String(Number(value.toPrecision(digits))) : '';
 }
 
 /** The columns as a Parquet file. */

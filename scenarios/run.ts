@@ -2,6 +2,7 @@
 import { OPERATING_STATES } from '../controllers/contract.ts';
 import { safetyChain } from '../controllers/protection.ts';
 import { supervisor } from '../controllers/supervisor.ts';
+import { BladeElementRotor } from '../sim/aerodynamics/blade-element-rotor.ts';
 import type { CoefficientSurface } from '../sim/aerodynamics/coefficient-surface.ts';
 import { surfaceOf } from '../sim/aerodynamics/surface-rotor.ts';
 import { Clock, type RunSetup } from '../sim/clock.ts';
@@ -13,6 +14,7 @@ import { createMetrics } from './metrics.ts';
 import { createRecorder, type Recording } from './recorder.ts';
 import { initialState, rotorSetup } from './rotor-choice.ts';
 import type { ScenarioData } from './scenario.ts';
+import { createSectionRecorder, type SectionRecording } from './section-recorder.ts';
 import { CAUTION, type SpeedLevel, type StateSpan, SUMMARY_FORMAT, type Summary, type Verdict } from './summary.ts';
 import { requireCoverage } from './surface-need.ts';
 import { VERSION } from './version.ts';
@@ -20,6 +22,8 @@ import { VERSION } from './version.ts';
 export interface RunResult {
   summary: Summary;
   recording: Recording;
+  /** Where the rotor resolves its sections. */
+  sections?: SectionRecording;
 }
 
 /** Ticks between two reports of progress. */
@@ -59,6 +63,8 @@ export function runScenario(
 ): RunResult {
   const clock = new Clock(setUp(scenario, surface));
   const recorder = createRecorder(scenario);
+  const { rotor } = clock.plant;
+  const sections = rotor instanceof BladeElementRotor ? createSectionRecorder(rotor, scenario.record.rate) : undefined;
   const metrics = createMetrics(scenario);
   const limits = createLimits(scenario);
   const events: RunEvent[] = [];
@@ -70,6 +76,7 @@ export function runScenario(
     metrics.frame(frame);
     limits.frame(frame);
     recorder.frame(frame);
+    sections?.frame(frame);
     if (onProgress && frame.tick % PROGRESS_INTERVAL === 0) onProgress(frame.tick / clock.lastTick);
   });
   clock.run();
@@ -112,7 +119,7 @@ export function runScenario(
     },
     caution: CAUTION,
   };
-  return { summary, recording };
+  return { summary, recording, sections: sections?.finish() };
 }
 
 function withWindMarks(events: readonly RunEvent[], { wind, duration }: ScenarioData): RunEvent[] {
