@@ -222,6 +222,7 @@ export class Plant {
 
   /** Of the wind at the hub from the field's x axis, rad. */
   private windDirection(t: number): number {
+    if (this.wind.uniform && !this.wind.direction) return 0;
     if (this.windKeepsItsAxis) return 0;
     this.wind.velocity(t, 0, 0, this.hubWind);
     return Math.atan2(this.hubWind[1], this.hubWind[0]);
