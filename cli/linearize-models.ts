@@ -18,7 +18,7 @@ import { SampledLoop } from '../tuning/sampled-loop.ts';
 import { transmissionZeros } from '../tuning/transmission-zeros.ts';
 import type { LinearizeOptions } from './linearize.ts';
 import { textTable } from './text-table.ts';
-import { type MachineSubject, machineSubject, trimAll } from './tuning-subject.ts';
+import { type MachineSubject, machineSubject, rotorModelOf, trimAll } from './tuning-subject.ts';
 import { writeAsked } from './whole-file.ts';
 import { windSpeeds } from './wind-range.ts';
 
@@ -33,7 +33,7 @@ interface Model {
 
 /** @throws InputError where file, range or places to write are unusable */
 export async function linearModels(file: string, options: LinearizeOptions): Promise<void> {
-  const subject = await machineSubject(file, options.set);
+  const subject = await machineSubject(file, options.set, rotorModelOf(options.rotor));
   const { points, refusals } = trimAll(file, subject, windSpeeds(subject.turbine, options));
   const models = points.map((point) => modelAt(file, subject, point));
   if (options.csv !== undefined) await writeAsked(options.csv, csv(models));
@@ -113,12 +113,7 @@ function modelText({ plant, modes, zeros, loop }: Model): string {
     `Wind ${windSpeed.toFixed(2)} m/s (${region} region)`,
     'Plant:',
     modeTable(modes, plant.states),
-    `Zeros from pitch demand to generator speed, 1/s: ${
-      zeros
-        .filter(({ im }) => im >= 0)
-        .map(complexText)
-        .join('; ') || 'none'
-    }`,
+    `Zeros from pitch demand to generator speed, 1/s: ${zerosText(zeros)}`,
   ];
   if (plant.bends.length > 0)
     lines.push(`Slopes differ to both sides (the positive side counts): ${plant.bends.join('; ')}`);
@@ -131,10 +126,24 @@ function modelText({ plant, modes, zeros, loop }: Model): string {
 
 /** Faster modes than this are the law's filters and sensors. */
 const FASTEST_SHOWN = 60;
+/** The sections' own air: many modes that all say the same. */
+const SECTION_STATE = /section \d+:/;
+const MOST_ZEROS = 12;
+
+/** All of them; of many, those that swing or are on the wrong side. */
+function zerosText(zeros: readonly Complex[]): string {
+  const once = zeros.filter(({ im }) => im >= 0);
+  if (once.length <= MOST_ZEROS) return once.map(complexText).join('; ') || 'none';
+  const told = once.filter(({ re, im }) => re > 0 || im > 0.1);
+  return `${told.map(complexText).join('; ')}; ${once.length - told.length} others in the left half plane`;
+}
 
 function modeTable(modes: readonly Mode[], states: readonly string[]): string {
-  const shown = modes.filter(({ frequency }) => frequency < FASTEST_SHOWN);
-  return textTable(
+  const slow = modes.filter(({ frequency }) => frequency < FASTEST_SHOWN);
+  const leading = ({ participation }: Mode) => states[participation.indexOf(Math.max(...participation))];
+  const shown = slow.filter((mode) => !SECTION_STATE.test(leading(mode)));
+  const left = slow.length - shown.length;
+  const table = textTable(
     ['', 'pole_1_s', 'frequency_hz', 'damping', 'states_that_take_part'],
     shown.map((mode) => [
       '',
@@ -144,6 +153,7 @@ function modeTable(modes: readonly Mode[], states: readonly string[]): string {
       participants(mode, states),
     ]),
   );
+  return left === 0 ? table : `${table}\nand ${left} modes of the air at single sections, all listed by --json`;
 }
 
 function participants({ participation }: Mode, states: readonly string[]): string {

@@ -4,6 +4,7 @@ import type { WindRange } from './wind-range.ts';
 
 export interface LinearizeOptions extends WindRange {
   set: string[];
+  rotor: string;
   csv?: string;
   json?: boolean;
 }
@@ -20,6 +21,7 @@ export function registerLinearize(program: Command): void {
     )
     .argument('<file>', 'a turbine or a scenario file')
     .option('--set <path=value>', 'override a value, as in "tower.frequency=0.3 Hz" (repeatable)', collectSets, [])
+    .option('--rotor <model>', 'surface, or blade_element: azimuth-averaged, with its wake and flap', 'surface')
     .option('--from <speed>', 'lowest wind speed (default: cut-in)')
     .option('--to <speed>', 'highest wind speed (default: cut-out)')
     .option('--step <speed>', 'step of wind speed', '2 m/s')

@@ -3,6 +3,7 @@ import { controllerOf } from '../scenarios/control.ts';
 import { refusal } from '../scenarios/input-error.ts';
 import { assembleFigure, type FigurePanel } from '../scenarios/page.ts';
 import { setUp } from '../scenarios/run.ts';
+import { BladeElementRotor } from '../sim/aerodynamics/blade-element-rotor.ts';
 import type { TrimPoint } from '../sim/trim.ts';
 import { steadyWind } from '../sim/wind/steady.ts';
 import { linearPlant } from '../tuning/linear-plant.ts';
@@ -14,7 +15,7 @@ import { SampledLoop } from '../tuning/sampled-loop.ts';
 import type { MarginsOptions } from './margins.ts';
 import { readPageTemplate } from './page-template.ts';
 import { textTable } from './text-table.ts';
-import { ratedPoints, type ScenarioSubject, scenarioSubject, trimAll } from './tuning-subject.ts';
+import { ratedPoints, rotorModelOf, type ScenarioSubject, scenarioSubject, trimAll } from './tuning-subject.ts';
 import { writeAsked } from './whole-file.ts';
 import { windSpeeds } from './wind-range.ts';
 
@@ -65,7 +66,7 @@ const COLUMNS: readonly Column[] = [
 
 /** @throws InputError where file, range or places to write are unusable, or there is no loop to look at */
 export async function marginsTable(file: string, options: MarginsOptions): Promise<void> {
-  const subject = await scenarioSubject(file, options.set);
+  const subject = await scenarioSubject(file, options.set, rotorModelOf(options.rotor));
   const { points } = trimAll(file, subject, windSpeeds(subject.turbine, options));
   const rated = ratedPoints(file, subject, points);
   const row = options.measured ? measuredRow : exactRow;
@@ -103,7 +104,7 @@ export function exactRow({ turbine, rotor, machine, scenario }: ScenarioSubject,
 }
 
 /** The same from a simulation with speed sensors that neither round nor add noise. */
-export function measuredRow({ turbine, surface, scenario }: ScenarioSubject, point: TrimPoint): MarginRow {
+export function measuredRow({ turbine, surface, rotor, scenario }: ScenarioSubject, point: TrimPoint): MarginRow {
   const { windSpeed } = point;
   const setup = setUp(
     {
@@ -112,6 +113,7 @@ export function measuredRow({ turbine, surface, scenario }: ScenarioSubject, poi
       wind: steadyWind({ speed: windSpeed }),
       start: { kind: 'trim', wind: windSpeed },
       events: [],
+      rotor: { ...scenario.rotor, model: rotor instanceof BladeElementRotor ? 'blade element' : 'surface' },
       integrator: { kind: 'runge-kutta', step: 0.01 },
     },
     surface,

@@ -4,6 +4,7 @@ import type { WindRange } from './wind-range.ts';
 
 export interface MarginsOptions extends WindRange {
   set: string[];
+  rotor: string;
   measured?: boolean;
   plot?: string;
   csv?: string;
@@ -27,6 +28,7 @@ export function registerMargins(program: Command): void {
       collectSets,
       [],
     )
+    .option('--rotor <model>', 'surface, or blade_element: azimuth-averaged, with its wake and flap', 'surface')
     .option('--from <speed>', 'lowest wind speed (default: cut-in)')
     .option('--to <speed>', 'highest wind speed (default: cut-out)')
     .option('--step <speed>', 'step of wind speed', '1 m/s')

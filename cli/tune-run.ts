@@ -4,6 +4,7 @@ import { runScenario } from '../scenarios/run.ts';
 import type { ScenarioData } from '../scenarios/scenario.ts';
 import { cachedSurface } from '../scenarios/surface-cache.ts';
 import type { CoefficientSurface } from '../sim/aerodynamics/coefficient-surface.ts';
+import { withPitchScale } from '../tuning/schedule-fit.ts';
 import { withGains } from './loop-view.ts';
 
 /** Which run of which scenario with which gains. */
@@ -12,6 +13,8 @@ export interface TuneRun {
   set: readonly string[];
   seed: number;
   gains: { proportional: number; integral: number };
+  /** Factor on the schedule's pitch angles. */
+  pitchScale: number;
   /** Hz; as the controller has it when absent. */
   filterFrequency?: number;
 }
@@ -60,7 +63,12 @@ export default async function tuneRun(run: TuneRun): Promise<TuneRunResult> {
       ? scenario.controller.laws.find((l) => l.law === 'scheduled PI pitch')
       : undefined;
   if (law?.law !== 'scheduled PI pitch') throw new Error('the controller has no pitch law with gains');
-  const controller = withGains(scenario.controller, run.gains, law.schedule, run.filterFrequency);
+  const controller = withGains(
+    scenario.controller,
+    run.gains,
+    withPitchScale(law.schedule, run.pitchScale),
+    run.filterFrequency,
+  );
   try {
     const { summary } = runScenario({ ...scenario, controller }, surface);
     const objectives = OBJECTIVES.map(({ metric }) => {

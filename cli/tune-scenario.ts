@@ -9,10 +9,12 @@ import { loadScenario } from '../scenarios/disk.ts';
 import { refusal } from '../scenarios/input-error.ts';
 import type { ScenarioData } from '../scenarios/scenario.ts';
 import { CAUTION } from '../scenarios/summary.ts';
+import { withPitchScale } from '../tuning/schedule-fit.ts';
 import { searchTrades, type TradeResult, type TriedCandidate } from '../tuning/trade-search.ts';
 import { controllerPathOf, requireGains, withTunedLaw } from './controller-file.ts';
 import { withGains } from './loop-view.ts';
 import { RunJournal } from './run-journal.ts';
+import { scheduleText } from './schedule-text.ts';
 import type { ScenarioOptions } from './tune.ts';
 import { loopSections, reportPage, type Section } from './tune-report.ts';
 import { OBJECTIVES, type TuneRun, type TuneRunResult } from './tune-run.ts';
@@ -69,7 +71,7 @@ export async function tuneByScenario(files: readonly string[], options: Scenario
       return Promise.all(work);
     };
     const result = await searchTrades({
-      start: start.filterFrequency === undefined ? [0, 0] : [0, 0, 0],
+      start: start.filterFrequency === undefined ? [0, 0, 0] : [0, 0, 0, 0],
       step: FIRST_STEP,
       seed: searchSeed,
       budget: candidates,
@@ -99,10 +101,11 @@ function startOf({ controller }: ScenarioData, file: string): Start {
 }
 
 /** The gains that a candidate's variables stand for: logarithms of factors on the start's. */
-function gainsOf(start: Start, [proportional, integral, filter]: readonly number[]) {
+function gainsOf(start: Start, [proportional, integral, pitchScale, filter]: readonly number[]) {
   return {
     proportional: start.proportional * Math.exp(proportional),
     integral: start.integral * Math.exp(integral),
+    pitchScale: Math.exp(pitchScale),
     filterFrequency: start.filterFrequency === undefined ? undefined : start.filterFrequency * Math.exp(filter),
   };
 }
@@ -126,8 +129,8 @@ function createRunner(
   const digests = scenarios.map(({ inputs }) => JSON.stringify(inputs));
 
   async function run(i: number, seed: number, gains: ReturnType<typeof gainsOf>): Promise<TuneRunResult> {
-    const { filterFrequency, ...both } = gains;
-    const task: TuneRun = { file: files[i], set, seed, gains: both, filterFrequency };
+    const { filterFrequency, pitchScale, ...both } = gains;
+    const task: TuneRun = { file: files[i], set, seed, gains: both, pitchScale, filterFrequency };
     const key = createHash('sha256')
       .update(JSON.stringify([digests[i], task]))
       .digest('hex')
@@ -239,18 +242,19 @@ async function tell(
       ? scenario.controller.laws.find((l) => l.law === 'scheduled PI pitch')
       : undefined;
   if (law?.law !== 'scheduled PI pitch') throw new Error('the controller has lost its pitch law');
-  const { filterFrequency, ...gains } = gainsOf(start, chosen.variables);
+  const { filterFrequency, pitchScale, ...gains } = gainsOf(start, chosen.variables);
+  const schedule = withPitchScale(law.schedule, pitchScale);
   const percent = (values: readonly number[]) =>
     OBJECTIVES.map(({ label }, i) => `${label} ${(100 * (values[i] - 1)).toFixed(1)} %`).join(', ');
   const found = `over the seeds of the search: ${percent(chosen.objectives)}; over ${unseen.length} others: ${percent(check)}`;
   const text = await withTunedLaw(source, out, set, {
     ...gains,
-    schedule: law.schedule,
+    schedule,
     filterFrequency,
     comments: {
       proportional: `search: ${start.proportional.toPrecision(4)} s before`,
       integral: `search: ${start.integral.toPrecision(4)} before`,
-      schedule: 'as it was',
+      schedule: `search: its pitch angles are ${pitchScale.toPrecision(3)} times what they were`,
       ...(filterFrequency === undefined
         ? {}
         : { filterFrequency: `search: ${start.filterFrequency?.toPrecision(4)} Hz before` }),
@@ -266,12 +270,12 @@ async function tell(
   if (broken > 0)
     console.log(`  over the unseen seeds ${(100 * broken).toFixed(0)} % of the runs trip or break a limit`);
   console.log(
-    `  proportional ${gains.proportional.toPrecision(4)} s, integral ${gains.integral.toPrecision(4)}${filterFrequency === undefined ? '' : `, filter ${filterFrequency.toPrecision(3)} Hz`}`,
+    `  proportional ${gains.proportional.toPrecision(4)} s, integral ${gains.integral.toPrecision(4)}, ${scheduleText(schedule)}${filterFrequency === undefined ? '' : `, filter ${filterFrequency.toPrecision(3)} Hz`}`,
   );
   console.log(`Written to ${out}.\n${CAUTION}`);
   if (report === undefined) return;
   const rated = ratedPoints(files[0], subject, trimAll(files[0], subject, evenWinds(turbine, 50)).points);
-  const tuned = withGains(scenario.controller, gains, law.schedule, filterFrequency);
+  const tuned = withGains(scenario.controller, gains, schedule, filterFrequency);
   const sections = [frontSection(result, chosen, found, start), ...loopSections(subject, tuned, rated, PEAK_SHOWN)];
   await writeAsked(report, reportPage(`${turbine.name}: pitch gains by search`, sections));
   console.log(`Report: ${report}`);
@@ -320,10 +324,11 @@ function frontSection({ tried, front }: TradeResult, chosen: TriedCandidate, fou
         ...OBJECTIVES.map(({ label }) => `${label}, over the start's`),
       ],
       rows: front.map((candidate) => {
-        const { proportional, integral, filterFrequency } = gainsOf(start, candidate.variables);
+        const { proportional, integral, pitchScale, filterFrequency } = gainsOf(start, candidate.variables);
         return [
           proportional.toPrecision(4),
           integral.toPrecision(4),
+          pitchScale.toPrecision(3),
           filterFrequency?.toPrecision(3) ?? '-',
           ...candidate.objectives.map((value) => value.toFixed(3)),
         ];

@@ -8,11 +8,13 @@ import { machineOf } from '../scenarios/machine.ts';
 import type { ScenarioData } from '../scenarios/scenario.ts';
 import { formatTag } from '../scenarios/schema/file-kind.ts';
 import { cachedSurface } from '../scenarios/surface-cache.ts';
+import { BladeElementRotor } from '../sim/aerodynamics/blade-element-rotor.ts';
 import type { CoefficientSurface } from '../sim/aerodynamics/coefficient-surface.ts';
 import { surfaceRotor } from '../sim/aerodynamics/surface-rotor.ts';
 import type { Rotor } from '../sim/rotor.ts';
 import { Trim, type TrimPoint } from '../sim/trim.ts';
-import type { Turbine } from '../sim/turbine.ts';
+import type { RotorModel, Turbine } from '../sim/turbine.ts';
+import { axisymmetric } from '../tuning/linear-plant.ts';
 
 export interface MachineSubject {
   turbine: Turbine;
@@ -27,40 +29,69 @@ export interface MachineSubject {
 }
 
 /** The turbine of a turbine file, or of a scenario together with its controller. @throws InputError */
-export async function machineSubject(file: string, set: readonly string[]): Promise<MachineSubject> {
+export async function machineSubject(
+  file: string,
+  set: readonly string[],
+  rotor: RotorModel = 'surface',
+): Promise<MachineSubject> {
   const text = await readFile(file, 'utf8').catch(() => '');
   if (!new RegExp(`^galehold:\\s*${formatTag('scenario')}`, 'm').test(text)) {
-    return ofTurbine(await loadTurbine(file, { set }));
+    return ofTurbine(file, await loadTurbine(file, { set }), rotor);
   }
-  return scenarioSubject(file, set);
+  return scenarioSubject(file, set, rotor);
 }
 
 export type ScenarioSubject = MachineSubject & { scenario: ScenarioData };
 
 /** @throws InputError where the file is no scenario */
-export async function scenarioSubject(file: string, set: readonly string[]): Promise<ScenarioSubject> {
+export async function scenarioSubject(
+  file: string,
+  set: readonly string[],
+  rotor: RotorModel = 'surface',
+): Promise<ScenarioSubject> {
   const scenario = await loadScenario(file, { set });
-  const subject = ofTurbine(scenario.turbine);
+  const subject = ofTurbine(file, scenario.turbine, rotor);
   return { ...subject, scenario, torqueCurve: torqueCurveOf(scenario.controller, subject.machine) };
 }
 
-function ofTurbine(turbine: Turbine): MachineSubject {
+/** With the blade-element rotor the machine is taken the same at every azimuth: no tilt, no cone, no tower shadow. */
+function ofTurbine(file: string, turbine: Turbine, model: RotorModel): MachineSubject {
   const surface = cachedSurface(turbine);
-  const rotor = surfaceRotor(surface);
-  return { turbine, machine: machineOf(turbine), surface, rotor, trim: new Trim(turbine, rotor) };
+  const machine = machineOf(turbine);
+  if (model === 'surface') {
+    const rotor = surfaceRotor(surface);
+    return { turbine, machine, surface, rotor, trim: new Trim(turbine, rotor) };
+  }
+  if (turbine.rotor.aerodynamics.kind !== 'blade') {
+    throw refusal(file, 'the blade-element rotor needs a blade, but the turbine gives coefficient tables');
+  }
+  const even = axisymmetric(turbine);
+  const rotor = new BladeElementRotor(even);
+  return { turbine: even, machine, surface, rotor, trim: new Trim(even, rotor) };
+}
+
+/** The rotor that `--rotor` names. @throws InputError for another word */
+export function rotorModelOf(text: string): RotorModel {
+  if (text === 'surface') return text;
+  if (text === 'blade_element') return 'blade element';
+  throw refusal('--rotor', `must be surface or blade_element, not "${text}"`);
 }
 
 /** Trim points at those of `winds` that have one, and why the others have none. @throws InputError where none has */
 export function trimAll(
   file: string,
-  { trim, torqueCurve }: MachineSubject,
+  { trim, torqueCurve, rotor }: MachineSubject,
   winds: readonly number[],
 ): { points: TrimPoint[]; refusals: string[] } {
   const points: TrimPoint[] = [];
   const refusals: string[] = [];
   for (const wind of winds) {
     try {
-      points.push(trim.at(wind, torqueCurve));
+      const point = trim.at(wind, torqueCurve);
+      const settled = rotor instanceof BladeElementRotor;
+      points.push(
+        settled ? { ...point, rotorStates: rotor.settledStates(wind, point.rotorSpeed, point.pitch) } : point,
+      );
     } catch (cause) {
       refusals.push(cause instanceof Error ? cause.message : String(cause));
     }

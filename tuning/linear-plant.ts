@@ -56,8 +56,10 @@ interface Coordinate {
 /**
  * The plant's slopes at a trim point by central differences on its declared state.
  *
- * All blades move together: pitch angles and rates become their collective coordinates, which is all that a rotor in
- * uniform wind couples to shaft and tower.
+ * All blades move together: what each blade has of its own (pitch, wake, bending) becomes a collective coordinate, the
+ * mean over the blades. That is the first row of the Coleman transform, and all that couples to shaft and tower while the
+ * wind is uniform and the rotor the same at every azimuth; a rotor with states must be so (see `axisymmetric`), and
+ * `point` must carry them.
  * @param pitchAs whether the drive is asked for an angle (rad) or a rate (rad/s)
  * @throws RangeError where `point` is no steady state of the plant
  */
@@ -102,10 +104,12 @@ export function linearPlant(
   for (const input of inputs) input.set(0);
 
   const n = coordinates.length;
+  // A rotor may keep its last answer for the same instant: every evaluation has an instant of its own.
+  let instant = 0;
   /** Derivatives of the coordinates, then the outputs. */
   const evaluate = (): number[] => {
-    plant.derivative(0, x, memory, dx);
-    return [...coordinates.map(({ slots, weights }) => dx[slots[0]] / weights[0]), ...outputsOf(plant, x)];
+    plant.derivative(instant++, x, memory, dx);
+    return [...coordinates.map((coordinate) => coordinateRate(coordinate, dx)), ...outputsOf(plant, x)];
   };
   const steady = evaluate();
   checkSteady(steady.slice(0, n), coordinates, point);
@@ -164,23 +168,44 @@ function outputsOf(plant: Plant, x: Float64Array): number[] {
   ];
 }
 
+/** What belongs to a blade: its number, and what it is. */
+const OF_BLADE = /^rotor: blade (\d+)(.*)$/;
+
 function coordinatesOf(plant: Plant): Coordinate[] {
   const scales = plant.scales();
-  const bladesFrom = [plant.pitch.angleAt, plant.pitch.rateAt];
+  const { names } = plant.layout;
+  const { bladeCount } = plant.pitch;
   const d = plant.drivetrain.at;
   const { kind, gearRatio } = plant.turbine.drivetrain;
-  return plant.layout.names.flatMap((name, slot): Coordinate[] => {
+  return names.flatMap((name, slot): Coordinate[] => {
     if (LEFT_OUT.test(name)) return [];
+    const scale = scales[slot];
     if (kind === 'rigid' && (slot === d + 2 || slot === d + 3)) return [];
     if (kind === 'rigid' && slot === d + 1) {
-      return [{ name, slots: [slot, d + 2], weights: [1, gearRatio], scale: scales[slot] }];
+      return [{ name, slots: [slot, d + 2], weights: [1, gearRatio], scale }];
     }
-    const first = bladesFrom.find((from) => slot >= from && slot < from + plant.pitch.bladeCount);
-    if (first === undefined) return [{ name, slots: [slot], weights: [1], scale: scales[slot] }];
-    if (slot !== first) return [];
-    const slots = Array.from({ length: plant.pitch.bladeCount }, (_, blade) => first + blade);
-    return [{ name: name.replace(/ 1$/, ' (collective)'), slots, weights: slots.map(() => 1), scale: scales[slot] }];
+    const pitchFrom = [plant.pitch.angleAt, plant.pitch.rateAt].find((at) => slot >= at && slot < at + bladeCount);
+    const [, blade, rest = ''] = OF_BLADE.exec(name) ?? [];
+    if (pitchFrom === undefined && blade === undefined) return [{ name, slots: [slot], weights: [1], scale }];
+    if (pitchFrom === undefined ? blade !== '1' : slot !== pitchFrom) return [];
+    const slots = Array.from({ length: bladeCount }, (_, b) =>
+      pitchFrom === undefined ? names.indexOf(`rotor: blade ${b + 1}${rest}`) : pitchFrom + b,
+    );
+    const collective = pitchFrom === undefined ? `rotor: blades${rest}` : name.replace(/ 1$/, ' (collective)');
+    return [{ name: collective, slots, weights: slots.map(() => 1), scale }];
   });
+}
+
+function coordinateRate({ slots, weights }: Coordinate, dx: Float64Array): number {
+  let sum = 0;
+  for (let i = 0; i < slots.length; i++) sum += dx[slots[i]] / weights[i];
+  return sum / slots.length;
+}
+
+/** The machine with a rotor that is the same at every azimuth: no tilt, no cone, no tower in its way. */
+export function axisymmetric(turbine: Turbine): Turbine {
+  const tower = { ...turbine.tower, topDiameter: undefined, baseDiameter: undefined };
+  return { ...turbine, rotor: { ...turbine.rotor, tilt: 0, cone: 0 }, tower };
 }
 
 /** A millionth of a state's scale a second is rounding of the trim. */

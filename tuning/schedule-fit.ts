@@ -113,3 +113,21 @@ export function smallestFit(
 ): ScheduleFit {
   return fits.find((fit) => fit[by] <= tolerance) ?? fits.reduce((best, fit) => (fit[by] < best[by] ? fit : best));
 }
+
+/** The schedule with its pitch angles multiplied by `factor`: below one it lowers the gain sooner. */
+export function withPitchScale(schedule: GainScheduleSettings, factor: number): GainScheduleSettings {
+  switch (schedule.kind) {
+    case 'constant':
+      return schedule;
+    case 'reciprocal':
+      return { ...schedule, halvingPitch: factor * schedule.halvingPitch };
+    case 'quadratic':
+      return {
+        ...schedule,
+        linearPitch: factor * schedule.linearPitch,
+        quadraticPitch: factor * schedule.quadraticPitch,
+      };
+    case 'table':
+      return { ...schedule, pitch: schedule.pitch.map((pitch) => factor * pitch) };
+  }
+}
