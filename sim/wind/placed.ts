@@ -41,6 +41,7 @@ export function placedWind(field: WindField, { delay = 0, scale = 1, window }: P
 
   const { direction } = field;
   return {
+    uniform: field.uniform,
     velocity(t, y, z, out) {
       const share = strength(t);
       if (share === 0) {

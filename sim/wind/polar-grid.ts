@@ -84,7 +84,8 @@ export interface PolarSeries {
 
 /**
  * How to read a series between its points: linear in radius, azimuth and time, and periodic in time. Beyond the
- * outermost ring it takes the ring's value. Allocates nothing.
+ * outermost ring it takes the ring's value. Allocates nothing. All points of one instant are blended once and kept for
+ * the next questions at that instant, since a rotor asks for all its sections at a time.
  */
 export function polarReader({ grid, period, samples, values }: PolarSeries) {
   const { radius, rings, spokes } = grid;
@@ -92,44 +93,72 @@ export function polarReader({ grid, period, samples, values }: PolarSeries) {
   const perRadian = spokes / (2 * Math.PI);
   const perSecond = samples / period;
   const stride = 3 * pointCount(grid);
+  const row = spokes + 2;
+  const outermost = rings * (1 - Number.EPSILON);
+  const source = Int32Array.from({ length: 3 * row * (rings + 1) }, (_, i) => {
+    const cell = Math.floor(i / 3);
+    const ring = Math.floor(cell / row);
+    return (i % 3) + (ring === 0 ? 0 : 3 * (1 + (ring - 1) * spokes + ((cell % row) % spokes)));
+  });
+  const now = new Float64Array(source.length);
+  const blendedAt = new Float64Array(1).fill(Number.NaN);
 
-  return function read(t: number, y: number, z: number, out: Float64Array): void {
-    const rho = Math.min(Math.sqrt(y * y + z * z) * perMetre, rings);
-    const inner = Math.min(Math.floor(rho), rings - 1);
-    const outerShare = rho - inner;
-    // (y, z) = (−r sin ψ, r cos ψ)
-    let azimuth = Math.atan2(-y, z) * perRadian;
-    if (azimuth < 0) azimuth += spokes;
-    let spoke = Math.floor(azimuth);
-    const nextShare = azimuth - spoke;
-    if (spoke >= spokes) spoke = 0;
-    const next = spoke + 1 === spokes ? 0 : spoke + 1;
-
-    // The hub stands for all points of the ring of radius 0.
-    const outerRing = 3 * (1 + inner * spokes);
-    const a = inner === 0 ? 0 : outerRing + 3 * (spoke - spokes);
-    const b = inner === 0 ? 0 : outerRing + 3 * (next - spokes);
-    const c = outerRing + 3 * spoke;
-    const d = outerRing + 3 * next;
-
+  function blend(t: number): void {
+    blendedAt[0] = t;
     const instant = t * perSecond;
     const floor = Math.floor(instant);
     const laterShare = instant - floor;
     const sample = ((floor % samples) + samples) % samples;
     const early = sample * stride;
     const late = sample + 1 === samples ? 0 : early + stride;
-
-    const innerShare = 1 - outerShare;
-    const wa = innerShare * (1 - nextShare);
-    const wb = innerShare * nextShare;
-    const wc = outerShare * (1 - nextShare);
-    const wd = outerShare * nextShare;
-    for (let i = 0; i < 3; i++) {
-      const at = early + i;
-      const then = late + i;
-      const before = wa * values[at + a] + wb * values[at + b] + wc * values[at + c] + wd * values[at + d];
-      const after = wa * values[then + a] + wb * values[then + b] + wc * values[then + c] + wd * values[then + d];
-      out[i] = before + laterShare * (after - before);
+    for (let i = 0; i < now.length; i++) {
+      const before = values[early + source[i]];
+      now[i] = before + laterShare * (values[late + source[i]] - before);
     }
+  }
+
+  return function read(t: number, y: number, z: number, out: Float64Array): void {
+    if (t !== blendedAt[0]) blend(t);
+    const rho = Math.min(Math.sqrt(y * y + z * z) * perMetre, outermost);
+    // `| 0` is a floor here, and leaves whole numbers that index fast.
+    const inner = rho | 0;
+    const outerShare = rho - inner;
+    // (y, z) = (−r sin ψ, r cos ψ)
+    const azimuth = angleOf(-y, z) * perRadian;
+    const spoke = azimuth | 0;
+    const nextShare = azimuth - spoke;
+
+    // One row of spokes a ring, the first repeated as the last; the hub stands for all points of the ring of radius 0.
+    const a = 3 * (inner * row + spoke);
+    const b = a + 3;
+    const c = a + 3 * row;
+    const d = c + 3;
+    const ua = now[a] + nextShare * (now[b] - now[a]);
+    const va = now[a + 1] + nextShare * (now[b + 1] - now[a + 1]);
+    const wa = now[a + 2] + nextShare * (now[b + 2] - now[a + 2]);
+    out[0] = ua + outerShare * (now[c] + nextShare * (now[d] - now[c]) - ua);
+    out[1] = va + outerShare * (now[c + 1] + nextShare * (now[d + 1] - now[c + 1]) - va);
+    out[2] = wa + outerShare * (now[c + 2] + nextShare * (now[d + 2] - now[c + 2]) - wa);
   };
+}
+
+/** Keeps 0/0 away without changing any other quotient. */
+const NOTHING = 1e-300;
+
+/**
+ * Math.atan2 from 0 to 2π, to within 3e-7 rad: it takes most of the time of reading, and this is several times faster.
+ * The arctangent from 0 to 1 is our own fit of least maximum error, in pairs so that they can be computed side by side.
+ */
+function angleOf(sine: number, cosine: number): number {
+  const s = Math.abs(sine);
+  const c = Math.abs(cosine);
+  const isSteep = s > c;
+  const x = Math.min(s, c) / (Math.max(s, c) + NOTHING);
+  const q = x * x;
+  const qq = q * q;
+  const low = 0.999996112 - 0.33317368 * q + qq * (0.198078153 - 0.132333412 * q);
+  const octant = x * (low + qq * qq * (0.0796236577 - 0.0336042086 * q + 0.00681178956 * qq));
+  const quarter = isSteep ? Math.PI / 2 - octant : octant;
+  const half = cosine < 0 ? Math.PI - quarter : quarter;
+  return sine < 0 ? 2 * Math.PI - half : half;
 }

@@ -54,6 +54,7 @@ export function recordedWind(
 
   const ends = [start, start + (samples - 1) * step];
   return {
+    uniform: last === 0,
     velocity,
     ...(turning && { direction: (t: number) => valueAt(turning, (t - start) / finest) }),
     rotorMean(t) {

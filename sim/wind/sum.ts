@@ -6,16 +6,37 @@ export function sumWind(parts: readonly WindField[]): WindField {
   return direction ? turned(sum, direction) : sum;
 }
 
-/** Several parts as one, which `sumWind` then turns with all the others. */
+/**
+ * Several parts as one, which `sumWind` then turns with all the others. Parts that are the same all over the rotor are
+ * asked once an instant.
+ */
 export function addedWind(parts: readonly WindField[]): WindField {
   const count = parts.length;
+  const alike = parts.filter((part) => part.uniform === true);
+  const local = parts.filter((part) => part.uniform !== true);
+  const localCount = local.length;
+  const everywhere = new Float64Array(3);
   const velocityOfPart = new Float64Array(3);
+  let askedAt = Number.NaN;
+
+  function ask(t: number): void {
+    askedAt = t;
+    everywhere.fill(0);
+    for (const part of alike) {
+      part.velocity(t, 0, 0, velocityOfPart);
+      for (let i = 0; i < 3; i++) everywhere[i] += velocityOfPart[i];
+    }
+  }
+
   return {
-    uniform: parts.every((part) => part.uniform === true),
+    uniform: localCount === 0,
     velocity(t, y, z, out) {
-      out.fill(0, 0, 3);
-      for (let i = 0; i < count; i++) {
-        parts[i].velocity(t, y, z, velocityOfPart);
+      if (t !== askedAt) ask(t);
+      out[0] = everywhere[0];
+      out[1] = everywhere[1];
+      out[2] = everywhere[2];
+      for (let i = 0; i < localCount; i++) {
+        local[i].velocity(t, y, z, velocityOfPart);
         out[0] += velocityOfPart[0];
         out[1] += velocityOfPart[1];
         out[2] += velocityOfPart[2];
