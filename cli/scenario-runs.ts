@@ -103,10 +103,11 @@ function withName(error: Error, name: string): Error {
 }
 
 async function view(file: string, results: readonly RunResult[], { json }: RunOptions): Promise<void> {
-  const runs = results.map(({ summary, recording }) => ({
+  const runs = results.map(({ summary, recording, sections }) => ({
     name: summary.scenario.name,
     summary,
     columns: recording.columns,
+    sections,
   }));
   const written = await writePage(file, runs);
   if (!json) console.log(`\nView: ${written}`);

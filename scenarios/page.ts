@@ -14,6 +14,8 @@ export interface ViewedRun {
   summary: Summary;
   /** `time_s` and any of the channels of sim/channels.ts, in the units that their names say. */
   columns: readonly Column[];
+  /** The air at the blades, as `section-recorder.ts` makes it; absent where the rotor does not resolve its sections. */
+  sections?: { stations: readonly Column[]; columns: readonly Column[] };
   /** What the result lacks, a sentence each; shown with the run. */
   missing?: readonly string[];
 }
@@ -46,7 +48,13 @@ export type PageData =
   | {
       kind: 'runs';
       title: string;
-      runs: { name: string; summary: Summary; columns: PackedColumn[]; missing: string[] }[];
+      runs: {
+        name: string;
+        summary: Summary;
+        columns: PackedColumn[];
+        sections: { stations: PackedColumn[]; columns: PackedColumn[] } | null;
+        missing: string[];
+      }[];
     }
   | {
       kind: 'figure';
@@ -68,10 +76,11 @@ export function assemblePage(template: PageTemplate, view: View): string {
   return html(template, {
     kind: 'runs',
     title: view.title,
-    runs: view.runs.map(({ name, summary, columns, missing = [] }) => ({
+    runs: view.runs.map(({ name, summary, columns, sections, missing = [] }) => ({
       name,
       summary,
       columns: packColumns(columns),
+      sections: sections ? { stations: packColumns(sections.stations), columns: packColumns(sections.columns) } : null,
       missing: [...missing],
     })),
   });

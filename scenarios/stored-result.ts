@@ -8,6 +8,7 @@ import { InputError } from './input-error.ts';
 import type { Column } from './packed-column.ts';
 import type { ViewedRun } from './page.ts';
 import { CHANNELS_CSV_FILE, SUMMARY_FILE } from './results.ts';
+import { storedSectionTables } from './stored-sections.ts';
 import { SUMMARY_FORMAT, type Summary } from './summary.ts';
 
 const TIME = 'time_s';
@@ -24,7 +25,8 @@ export async function readStoredResult(folder: string): Promise<ViewedRun> {
   if (end !== undefined && summary.scenario.duration - end > 2 / summary.recordRate) {
     missing.push(`${CHANNELS_CSV_FILE} ends at ${end} s of ${summary.scenario.duration} s.`);
   }
-  return { name: basename(resolve(folder)), summary, columns, missing };
+  const sections = await storedSectionTables(folder);
+  return { name: basename(resolve(folder)), summary, columns, ...(sections && { sections }), missing };
 }
 
 const verdict = z.enum(['holds', 'broken', 'no limits']);

@@ -1,4 +1,5 @@
 /** Reads back the air at the blades that a run with the blade-element rotor has left in its results folder. Node only. */
+import { existsSync } from 'node:fs';
 import { readFile } from 'node:fs/promises';
 import { join } from 'node:path';
 import { parse } from 'csv-parse/sync';
@@ -79,6 +80,23 @@ export async function readStoredSections(folder: string): Promise<StoredSections
         tangentialInduced: at.tangentialInduced[row],
       };
     },
+  };
+}
+
+/**
+ * Both tables as they are; undefined for a run that has left none.
+ * @throws InputError where they are cut or altered
+ */
+export async function storedSectionTables(
+  folder: string,
+): Promise<
+  { stations: { name: string; values: Float64Array }[]; columns: { name: string; values: Float64Array }[] } | undefined
+> {
+  if (!existsSync(join(folder, SECTIONS_FILE))) return undefined;
+  const listed = (table: ReadonlyMap<string, Float64Array>) => [...table].map(([name, values]) => ({ name, values }));
+  return {
+    stations: listed(await readTable(folder, STATIONS_FILE)),
+    columns: listed(await readTable(folder, SECTIONS_FILE)),
   };
 }
 

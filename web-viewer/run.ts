@@ -5,6 +5,15 @@ import type { PageData } from '../scenarios/page.ts';
 import type { Summary } from '../scenarios/summary.ts';
 import { type LineStyle, lineStyle } from './palette.ts';
 
+/** The air at stations of each blade; names of columns as in `scenarios/section-recorder.ts`. */
+export interface BladeRecord {
+  bladeCount: number;
+  /** s */
+  time: Float32Array;
+  stations: ReadonlyMap<string, Float32Array>;
+  columns: ReadonlyMap<string, Float32Array>;
+}
+
 export interface Run {
   /** Tells runs apart; short. */
   name: string;
@@ -12,6 +21,7 @@ export interface Run {
   /** s; empty where the result has no channels. */
   time: Float32Array;
   columns: ReadonlyMap<string, Float32Array>;
+  blades: BladeRecord | undefined;
   /** What the result lacks, a sentence each. */
   missing: readonly string[];
   style: LineStyle;
@@ -22,16 +32,29 @@ export interface Run {
 const MOST_OVERLAID = 4;
 
 export function openRuns(data: Extract<PageData, { kind: 'runs' }>): Run[] {
-  const runs = data.runs.map(({ name, summary, columns: packed, missing }, index) => {
+  const runs = data.runs.map(({ name, summary, columns: packed, sections, missing }, index) => {
     const columns = unpackColumns(packed);
     const time = columns.get('time_s') ?? new Float32Array();
-    return { name, summary, time, columns, missing, style: lineStyle(index), shown: true };
+    const blades = sections ? openBlades(sections) : undefined;
+    return { name, summary, time, columns, blades, missing, style: lineStyle(index), shown: true };
   });
   if (runs.length > MOST_OVERLAID) {
     const first = runs.find(({ summary }) => summary.events.some(({ kind }) => kind === 'guard')) ?? runs[0];
     for (const run of runs) run.shown = run === first;
   }
   return runs;
+}
+
+type PackedSections = NonNullable<Extract<PageData, { kind: 'runs' }>['runs'][number]['sections']>;
+
+function openBlades(sections: PackedSections): BladeRecord {
+  const columns = unpackColumns(sections.columns);
+  return {
+    bladeCount: [...columns.keys()].filter((name) => /^pitch_\d_deg$/.test(name)).length,
+    time: columns.get('time_s') ?? new Float32Array(),
+    stations: unpackColumns(sections.stations),
+    columns,
+  };
 }
 
 /** The value at `at` on the line drawn through the samples; NaN outside them and beside gaps. */

@@ -1,5 +1,6 @@
 /** The page of one or several runs: did it hold, what happened and when, what changed. */
 import type { PageData } from '../scenarios/page.ts';
+import { createBladeAir } from './blade-air.ts';
 import { channelPlots, furtherChannels } from './channel-plots.ts';
 import { metricTable, overviewTable } from './comparison.ts';
 import { DisplayUnits, UNIT_GROUPS } from './display-unit.ts';
@@ -46,11 +47,14 @@ export function showRuns(host: HTMLElement, data: Extract<PageData, { kind: 'run
     onRange: (range) => timeBar.showRange(range),
   });
 
+  const bladeAir = createBladeAir();
+
   const shownRuns = () => runs.filter((run) => run.shown);
 
   function moveCursor(at: number): void {
     stack.moveCursor(at);
     timeBar.showCursor(at, stateText(told, at));
+    bladeAir.show(told, at);
   }
 
   function showPlots(): void {
@@ -161,7 +165,7 @@ export function showRuns(host: HTMLElement, data: Extract<PageData, { kind: 'run
     element('div', { class: 'course' }, stack.host, element('aside', {}, eventsTitle, events)),
   );
 
-  host.append(verdicts, course, changes);
+  host.append(verdicts, course, bladeAir.host, changes);
   showNumbers();
   showPlots();
   if (told) moveCursor(cursorStart(told));

@@ -64,4 +64,11 @@ describe.each([
     expect(decay).toBeLessThan(3);
     expect(Math.abs(dynamic[dynamic.length - 1].share - 1)).toBeLessThan(0.01);
   });
+
+  it('leaves the slow stage’s part, 1 − k = 0.4 of the change, when the fast stage is over', () => {
+    // Without the slow stage (k = 1) less than a sixth would be left after R/U.
+    const left = dynamic.find(({ t }) => t >= radius / WIND)?.share ?? Number.NaN;
+    expect((left - 1) / (peak - 1)).toBeGreaterThan(0.25);
+    expect((left - 1) / (peak - 1)).toBeLessThan(0.5);
+  });
 });
