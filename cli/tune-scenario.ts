@@ -203,20 +203,14 @@ function progress(total: number) {
   };
 }
 
-/** Of the front, the trade that gains most where it gains least; one that loses nothing if there is any. */
+/** Of the front, the trade whose worst objective is best: what it gains in all three is likeliest to last in other winds. */
 function choose({ front }: TradeResult): TriedCandidate | undefined {
   const worst = ({ objectives }: TriedCandidate) => Math.max(...objectives);
-  const sum = ({ objectives }: TriedCandidate) => objectives.reduce((total, value) => total + value, 0);
-  const lossless = front.filter((candidate) => worst(candidate) <= LOSSLESS);
-  if (lossless.length > 0) return lossless.reduce((best, next) => (sum(next) < sum(best) ? next : best));
   return front.reduce<TriedCandidate | undefined>(
     (best, next) => (best && worst(best) <= worst(next) ? best : next),
     undefined,
   );
 }
-
-/** A trade counts as lossless on the seeds of the search with a little to spare for others. */
-const LOSSLESS = 0.98;
 
 interface Check {
   seeds: readonly number[];
