@@ -13,6 +13,8 @@ describe('a part of the wind', () => {
   it('blows later by its delay, with its breakpoints and marks', () => {
     const gust = placedWind(cosineGust({ start: 5, duration: 4, amplitude: 6 }), { delay: 10 });
     expect([5, 7, 15, 17, 19].map(gust.rotorMean)).toEqual([0, 0, 0, 6, 0]);
+    gust.velocity(17, 30, -20, velocity);
+    expect([...velocity]).toEqual([6, 0, 0]);
     expect(gust.breakpoints(100)).toEqual([15, 19]);
     expect(gust.marks().map(({ time }) => time)).toEqual([15, 17, 19]);
   });

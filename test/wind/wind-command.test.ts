@@ -91,6 +91,20 @@ describe('The wind command', () => {
     });
   });
 
+  it('names points by radius and azimuth: a quarter of a turn past the top is right of the hub, looking downwind', async () => {
+    const csv = join(folder, 'shear.csv');
+    const shear =
+      '{ kind: extreme_shear, edition: 4, wind_class: III, turbulence: B, hub_wind: 12 m/s, start: 4 s, faster: left }';
+    await wind('--part', shear, '--duration', '20 s', '--csv', csv, '--points', '1x4', '--rate', '1 Hz');
+    const [header = '', ...rows] = (await readFile(csv, 'utf8')).trim().split('\n');
+    const crest = rows[10]?.split(',') ?? [];
+    const along = (azimuth: number) => Number(crest[header.split(',').indexOf(`u_65m_${azimuth}deg_m_s`)]);
+    // 2.5 + 0.2 · 6.4 · 2.044 · (130/42)^¼ = 2.5 + 2.61632 · 1.326397 = 5.97028 m/s at the edge
+    expect(along(270)).toBeCloseTo(5.97028, 4);
+    expect(along(90)).toBeCloseTo(-5.97028, 4);
+    expect(along(0)).toBeCloseTo(0, 9);
+  });
+
   it('reads a record that is named on the command line', async () => {
     const csv = join(folder, 'mast.csv');
     await writeFile(
