@@ -14,6 +14,9 @@ const STRIPS = 400;
  * it bends), elastic energy ½ m_f ω₀² q², and gravity along the blade and normal to it. The equations of motion are
  * Lagrange's, so that energy is kept between blades, shaft and tower: stiffening ω² = ω₀² + κΩ², and its reaction on
  * the shaft. `kappa` and the weights are computed from the mass and the shape.
+ *
+ * The mode stays normal to the blade's sweep whatever the pitch: a feathered blade nods here as an unfeathered one would,
+ * with less damping from the air than one that takes its flapwise direction along.
  */
 export class BladeFlap {
   /** m_f, kg; κ; ω₀, rad/s; structural damping 2ζω₀ m_f, N s/m. */

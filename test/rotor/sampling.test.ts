@@ -1,5 +1,7 @@
 import { describe, expect, it } from 'vitest';
 import { BladeElementRotor } from '../../sim/aerodynamics/blade-element-rotor.ts';
+import type { CoefficientSurface } from '../../sim/aerodynamics/coefficient-surface.ts';
+import { surfaceRotor } from '../../sim/aerodynamics/surface-rotor.ts';
 import { emptyLoads, type RotorMotion, stillMotion } from '../../sim/rotor.ts';
 import { steadyWind } from '../../sim/wind/steady.ts';
 import type { WindField } from '../../sim/wind/wind.ts';
@@ -67,6 +69,32 @@ describe('Each section meets the wind where it is', () => {
     for (const wind of tipWinds(steadyWind({ speed: 10 }), { heading: 0.3 })) {
       expect(wind).toBeCloseTo(10 * Math.cos(0.3), 12);
     }
+  });
+});
+
+describe('The surface rotor', () => {
+  const area = Math.PI * 65 ** 2;
+  /** Thrust that grows with the square of the wind along the axis. */
+  const surface = {
+    torqueAndThrust(wind: number, _speed: number, _pitch: number, out: { torque: number; thrust: number }) {
+      out.torque = 0;
+      out.thrust = area * wind ** 2;
+    },
+  } as CoefficientSurface;
+  const thrust = (wind: WindField, heading: number) => {
+    const loads = emptyLoads(3);
+    surfaceRotor(surface).loads(0, wind, { ...stillMotion(), heading }, [0, 0, 0], 0, [0, 1, 2], [], loads);
+    return loads.thrust / area;
+  };
+
+  it('feels what blows along the axis of the nacelle, wherever wind and nacelle head', () => {
+    const wind = steadyWind({ speed: 10 });
+    expect(thrust(wind, 0)).toBeCloseTo(100, 9);
+    expect(thrust(wind, 0.3)).toBeCloseTo((10 * Math.cos(0.3)) ** 2, 9);
+    const turned: WindField = { ...wind, direction: () => 0.3, rotorMean: () => 10 * Math.cos(0.3) };
+    expect(thrust(turned, 0)).toBeCloseTo((10 * Math.cos(0.3)) ** 2, 9);
+    expect(thrust(turned, 0.3)).toBeCloseTo(100, 9);
+    expect(thrust(turned, -0.2)).toBeCloseTo((10 * Math.cos(0.5)) ** 2, 9);
   });
 });
 
