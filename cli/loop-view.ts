@@ -8,7 +8,8 @@ import type { TrimPoint } from '../sim/trim.ts';
 import type { Complex } from '../tuning/complex.ts';
 import type { Gains } from '../tuning/gains-by-formula.ts';
 import { linearPlant } from '../tuning/linear-plant.ts';
-import { type Mode, sampledModesOf } from '../tuning/modes.ts';
+import { frequencyGrid } from '../tuning/margins.ts';
+import { type Mode, modesOf, sampledModesOf } from '../tuning/modes.ts';
 import { sampledLaw } from '../tuning/sampled-law.ts';
 import { SampledLoop } from '../tuning/sampled-loop.ts';
 import { exactRow, type MarginRow } from './margins-table.ts';
@@ -22,7 +23,7 @@ export interface LoopView extends MarginRow {
   step: { time: readonly number[]; speed: readonly number[] };
 }
 
-const POINTS = 260;
+const POINTS = 200;
 const STEP_TIME = 30;
 
 /** The controller's data with other gains, schedule and, if given, filter corner (Hz). */
@@ -57,7 +58,8 @@ export function loopView(subject: ScenarioSubject, controller: ControllerData, p
   const { turbine, rotor, machine, scenario } = subject;
   const law = sampledLaw(controllerOf(controller, machine), machine, point);
   const loop = new SampledLoop(turbine, linearPlant(turbine, rotor, point, law.pitchAs), law);
-  const frequencies = Float64Array.from({ length: POINTS }, (_, i) => 0.05 * (20 / 0.05) ** (i / (POINTS - 1)));
+  const modes = sampledModesOf(loop.closedLoop(), law.sampleTime);
+  const frequencies = frequencyGrid(0.05, 20, POINTS, [...modes, ...modesOf(loop.plant.a)]);
   const state = new Float64Array(loop.states.length);
   const time: number[] = [];
   const speed: number[] = [];
@@ -72,7 +74,7 @@ export function loopView(subject: ScenarioSubject, controller: ControllerData, p
     ...exactRow({ ...subject, scenario: { ...scenario, controller } }, point),
     frequencies,
     gain: Array.from(frequencies, (frequency) => loop.gain(frequency)),
-    modes: sampledModesOf(loop.closedLoop(), law.sampleTime),
+    modes,
     step: { time, speed },
   };
 }

@@ -35,7 +35,7 @@ body { margin: 0 auto; max-width: 1400px; padding: 1rem 1.5rem 3rem; background:
 h1 { font-size: 1.5rem; } h2 { font-size: 1.15rem; margin: 2rem 0 0.5rem; }
 p { max-width: 75ch; margin: 0.4rem 0; }
 .charts { display: grid; grid-template-columns: repeat(auto-fit, minmax(min(100%, 520px), 1fr)); gap: 0.8rem; margin-top: 0.8rem; }
-.wide { overflow-x: auto; }
+.wide { overflow-x: auto; margin-top: 0.8rem; } summary { cursor: pointer; }
 table { border-collapse: collapse; background: var(--sheet); margin-top: 0.8rem; font-variant-numeric: tabular-nums; }
 th, td { padding: 0.25rem 0.7rem; border: 1px solid var(--grid); text-align: right; }
 th { color: var(--faint); font-weight: 600; }
@@ -50,17 +50,21 @@ ${sections.map(sectionText).join('\n')}
 }
 
 function sectionText({ heading, text, table, charts = [] }: Section): string {
-  const cells = (tag: 'th' | 'td', row: readonly string[]) =>
-    `<tr>${row.map((cell) => `<${tag}>${escaped(cell)}</${tag}>`).join('')}</tr>`;
   return [
     `<section><h2>${escaped(heading)}</h2>`,
     ...text.map((paragraph) => `<p>${escaped(paragraph)}</p>`),
-    table
-      ? `<div class="wide"><table>${cells('th', table.head)}${table.rows.map((row) => cells('td', row)).join('')}</table></div>`
-      : '',
     charts.length > 0 ? `<div class="charts">${charts.map(chartPicture).join('\n')}</div>` : '',
+    table ? tableText(table) : '',
     '</section>',
   ].join('\n');
+}
+
+/** Opens at a click: the charts say it first. */
+function tableText({ head, rows }: NonNullable<Section['table']>): string {
+  const cells = (tag: 'th' | 'td', row: readonly string[]) =>
+    `<tr>${row.map((cell) => `<${tag}>${escaped(cell)}</${tag}>`).join('')}</tr>`;
+  const table = `<table>${cells('th', head)}${rows.map((row) => cells('td', row)).join('')}</table>`;
+  return `<details class="wide"><summary>In numbers</summary>${table}</details>`;
 }
 
 /** Wind speeds drawn one by one. */

@@ -275,10 +275,23 @@ async function tell(
   console.log(`Report: ${report}`);
 }
 
+function capitalised(text: string): string {
+  return text[0].toUpperCase() + text.slice(1);
+}
+
+/** Rows of the front that a reader can compare. */
+const ROWS = 24;
+
+/** At most `count` items, evenly taken. */
+function thinned<T>(items: readonly T[], count: number): T[] {
+  if (items.length <= count) return [...items];
+  return Array.from({ length: count }, (_, i) => items[Math.round((i * (items.length - 1)) / (count - 1))]);
+}
+
 function frontSection({ tried, front }: TradeResult, chosen: TriedCandidate, found: string, start: Start): Section {
   const usable = tried.filter(({ broken }) => broken === 0);
   const pair = (first: number, second: number) => ({
-    title: `${OBJECTIVES[second].label} against ${OBJECTIVES[first].label}`,
+    title: capitalised(`${OBJECTIVES[second].label} against ${OBJECTIVES[first].label}`),
     xLabel: `${OBJECTIVES[first].label}, over the start's`,
     yLabel: `${OBJECTIVES[second].label}, over the start's`,
     lines: [
@@ -317,7 +330,7 @@ function frontSection({ tried, front }: TradeResult, chosen: TriedCandidate, fou
         'filter, Hz',
         ...OBJECTIVES.map(({ label }) => `${label}, over the start's`),
       ],
-      rows: front.map((candidate) => {
+      rows: thinned(front, ROWS).map((candidate) => {
         const { proportional, integral, pitchScale, filterFrequency } = gainsOf(start, candidate.variables);
         return [
           proportional.toPrecision(4),
