@@ -1,4 +1,5 @@
 import { describe, expect, it } from 'vitest';
+import type { Controller } from '../../controllers/contract.ts';
 import { CHANNELS, channelIndex } from '../../sim/channels.ts';
 import type { Clock, IntegratorChoice } from '../../sim/clock.ts';
 import type { ScriptedEvent } from '../../sim/scripted-event.ts';
@@ -6,7 +7,7 @@ import { cosineGust } from '../../sim/wind/cosine-gust.ts';
 import { profileWind } from '../../sim/wind/profile.ts';
 import { sumWind } from '../../sim/wind/sum.ts';
 import type { WindField } from '../../sim/wind/wind.ts';
-import { eventsOf, RPM } from '../sim/test-turbine.ts';
+import { eventsOf, RPM, testController } from '../sim/test-turbine.ts';
 import { bladeElementRun, STRAIGHT, WHOLE } from './blade-element-run.ts';
 
 const STEPS: IntegratorChoice = { kind: 'runge-kutta', step: 0.01 };
@@ -132,6 +133,36 @@ describe('A gust on the whole machine', () => {
     fork.restore(snapshot);
     fork.run(1500);
     expect(fork.snapshot().data).toEqual(unbroken.snapshot().data);
+  });
+});
+
+describe('A control law on the whole machine', () => {
+  it('is told each blade’s flap moment, the sway both ways and the vane, as the channels have them', () => {
+    const told: number[][] = [];
+    const law = testController();
+    const controller: Controller = {
+      ...law,
+      needs: [...law.needs, 'flapMoment', 'towerAccelerationSideSide', 'windDirection'],
+      step(t, measured, memory, demands) {
+        const { flapMoment, towerAccelerationForeAft, towerAccelerationSideSide, windDirection } = measured;
+        told.push([...flapMoment, towerAccelerationForeAft, towerAccelerationSideSide, windDirection]);
+        law.step(t, measured, memory, demands);
+      },
+    };
+    const clock = bladeElementRun({
+      windSpeed: 14,
+      wind: sheared(14),
+      turbine: WHOLE,
+      yawError: 0.1,
+      duration: 2,
+      integrator: STEPS,
+      controller,
+    });
+    const names = [1, 2, 3].map((b) => `flap_moment_${b}_mn_m`);
+    const kept = series(clock, [...names, 'tower_acceleration_m_s2', 'tower_side_acceleration_m_s2', 'yaw_error_deg']);
+    expect(told).toHaveLength(201);
+    for (const k of [0, 77, 200]) expect(told[k]).toEqual(Object.values(kept).map((values) => values[k]));
+    expect(new Set(told[77]).size).toBe(6);
   });
 });
 
