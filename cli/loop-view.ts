@@ -26,6 +26,12 @@ export interface LoopView extends MarginRow {
 const POINTS = 200;
 const STEP_TIME = 30;
 
+/** The controller's pitch law with gains; undefined where it has none. */
+export function pitchLawOf(data: ControllerData) {
+  if (data.kind !== 'laws') return undefined;
+  return data.laws.find((law) => law.law === 'scheduled PI pitch');
+}
+
 /** The controller's data with other gains, schedule and, if given, filter corner (Hz). */
 export function withGains(
   data: ControllerData,

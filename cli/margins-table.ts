@@ -5,13 +5,14 @@ import { assembleFigure, type FigurePanel } from '../scenarios/page.ts';
 import { setUp } from '../scenarios/run.ts';
 import { BladeElementRotor } from '../sim/aerodynamics/blade-element-rotor.ts';
 import type { TrimPoint } from '../sim/trim.ts';
+import type { Turbine } from '../sim/turbine.ts';
 import { steadyWind } from '../sim/wind/steady.ts';
 import { linearPlant } from '../tuning/linear-plant.ts';
 import { frequencyGrid, type Margins, marginsOf } from '../tuning/margins.ts';
 import { interpolatedGain, measureLoop, withQuietSensors } from '../tuning/measured-loop.ts';
 import { type Mode, modesOf, sampledModesOf } from '../tuning/modes.ts';
 import { sampledLaw } from '../tuning/sampled-law.ts';
-import { SampledLoop } from '../tuning/sampled-loop.ts';
+import { SampledLoop, spreadByNoise } from '../tuning/sampled-loop.ts';
 import type { MarginsOptions } from './margins.ts';
 import { readPageTemplate } from './page-template.ts';
 import { textTable } from './text-table.ts';
@@ -24,6 +25,8 @@ export interface MarginRow {
   margins: Margins;
   /** The closed loop's mode of least damping; absent where the loop was measured. */
   least?: Mode;
+  /** Pitch rate that the noise and the steps of the speed sensor alone cause, rad/s (standard deviation); where known. */
+  noiseRate?: number;
 }
 
 interface Column {
@@ -61,6 +64,12 @@ const COLUMNS: readonly Column[] = [
     value: ({ margins }) => margins.modulus.frequency / (2 * Math.PI),
   },
   { name: 'bandwidth_rad_s', label: 'Bandwidth, rad/s', digits: 3, value: ({ margins }) => margins.bandwidth },
+  {
+    name: 'noise_pitch_rate_deg_s',
+    label: 'Pitch rate by sensor noise, deg/s (standard deviation)',
+    digits: 3,
+    value: ({ noiseRate }) => (noiseRate ?? Number.NaN) / DEGREE,
+  },
   { name: 'least_damping', label: 'Least damping', digits: 4, value: ({ least }) => least?.damping ?? Number.NaN },
 ];
 
@@ -100,7 +109,16 @@ export function exactRow({ turbine, rotor, machine, scenario }: ScenarioSubject,
   const grid = frequencyGrid(0.01, Math.PI / law.sampleTime, 400, [...modes, ...modesOf(plant.a)]);
   requireLoop(scenario.controller.name, point, Math.hypot(...Object.values(loop.gain(1))));
   const least = modes.reduce((worst, mode) => (mode.damping < worst.damping ? mode : worst));
-  return { point, margins: marginsOf((frequency) => loop.gain(frequency), grid), least };
+  const stable = modes.every(({ pole }) => pole.re < 0);
+  const noiseRate = stable ? spreadByNoise(loop, PITCH_RATE, sensorNoise(turbine)) : undefined;
+  return { point, margins: marginsOf((frequency) => loop.gain(frequency), grid), least, noiseRate };
+}
+
+const PITCH_RATE = 'pitch: rate (collective)';
+
+/** Noise of the speed sensor, and of its steps as if they were noise of their own: a step over √12. */
+function sensorNoise({ sensors: { controlSpeed } }: Turbine): number {
+  return Math.hypot(controlSpeed.noise, controlSpeed.resolution / Math.sqrt(12));
 }
 
 /** The same from a simulation with speed sensors that neither round nor add noise. */

@@ -7,7 +7,7 @@ import { rotorSlopes } from '../tuning/rotor-slopes.ts';
 import { type GainPoint, type ScheduleFit, scheduleFits, smallestFit } from '../tuning/schedule-fit.ts';
 import { lagOf, speedLoop } from '../tuning/speed-loop.ts';
 import { controllerPathOf, requireGains, withTunedLaw } from './controller-file.ts';
-import { withGains } from './loop-view.ts';
+import { pitchLawOf, withGains } from './loop-view.ts';
 import { scheduleText } from './schedule-text.ts';
 import type { FormulaOptions } from './tune.ts';
 import { loopSections, reportPage } from './tune-report.ts';
@@ -50,11 +50,7 @@ export async function tuneByFormula(file: string, options: FormulaOptions): Prom
       'in the rated region the rotor’s power rises as the blades turn towards feather: it is stalled there',
     );
   }
-  const law =
-    scenario.controller.kind === 'laws'
-      ? scenario.controller.laws.find((l) => l.law === 'scheduled PI pitch')
-      : undefined;
-  const filter = law?.law === 'scheduled PI pitch' ? law.speedFilter?.frequency : undefined;
+  const filter = pitchLawOf(scenario.controller)?.speedFilter?.frequency;
   const terms = {
     aerodynamicDamping: options.aerodynamicDamping,
     constantPower: options.constantPower && keepsPower(subject),

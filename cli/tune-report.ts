@@ -4,7 +4,7 @@ import type { ControllerData } from '../scenarios/scenario.ts';
 import type { TrimPoint } from '../sim/trim.ts';
 import { logarithm } from '../tuning/complex.ts';
 import { CHART_STYLE, type Chart, type ChartLine, chartPicture, escaped } from './chart-picture.ts';
-import { type LoopView, loopView } from './loop-view.ts';
+import { type LoopView, loopView, pitchLawOf } from './loop-view.ts';
 import type { ScenarioSubject } from './tuning-subject.ts';
 
 const DEGREE = Math.PI / 180;
@@ -106,6 +106,13 @@ export function loopSections(
         ),
         againstWind('Bandwidth', 'rad/s', views, before, ({ margins }) => margins.bandwidth),
         againstWind('Phase margin', 'deg', views, before, ({ margins }) => margins.phase.angle / DEGREE),
+        againstWind(
+          'Pitch rate by sensor noise',
+          'deg/s',
+          views,
+          before,
+          ({ noiseRate }) => (noiseRate ?? Number.NaN) / DEGREE,
+        ),
         againstWind('Gain margin', 'factor', views, before, ({ margins }) => margins.gain.factor),
       ],
     },
@@ -230,9 +237,9 @@ function poleMap(views: readonly LoopView[]): Chart {
 }
 
 function schedulePicture(tuned: ControllerData, points: readonly TrimPoint[]): Chart {
-  const law = tuned.kind === 'laws' ? tuned.laws.find((each) => each.law === 'scheduled PI pitch') : undefined;
-  const factor = law?.law === 'scheduled PI pitch' ? gainSchedule(law.schedule) : () => 1;
-  const gain = law?.law === 'scheduled PI pitch' ? law.proportional : 1;
+  const law = pitchLawOf(tuned);
+  const factor = law ? gainSchedule(law.schedule) : () => 1;
+  const gain = law ? law.proportional : 1;
   const last = points[points.length - 1].pitch;
   const pitch = Array.from({ length: 120 }, (_, i) => (last * i) / 119);
   return {

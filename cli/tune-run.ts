@@ -5,7 +5,7 @@ import type { ScenarioData } from '../scenarios/scenario.ts';
 import { cachedSurface } from '../scenarios/surface-cache.ts';
 import type { CoefficientSurface } from '../sim/aerodynamics/coefficient-surface.ts';
 import { withPitchScale } from '../tuning/schedule-fit.ts';
-import { withGains } from './loop-view.ts';
+import { pitchLawOf, withGains } from './loop-view.ts';
 
 /** Which run of which scenario with which gains. */
 export interface TuneRun {
@@ -58,11 +58,8 @@ function scenarioOf({ file, set, seed }: TuneRun) {
 /** Runs it. @throws InputError where the files cannot be used */
 export default async function tuneRun(run: TuneRun): Promise<TuneRunResult> {
   const { scenario, surface } = await scenarioOf(run);
-  const law =
-    scenario.controller.kind === 'laws'
-      ? scenario.controller.laws.find((l) => l.law === 'scheduled PI pitch')
-      : undefined;
-  if (law?.law !== 'scheduled PI pitch') throw new Error('the controller has no pitch law with gains');
+  const law = pitchLawOf(scenario.controller);
+  if (!law) throw new Error('the controller has no pitch law with gains');
   const controller = withGains(
     scenario.controller,
     run.gains,

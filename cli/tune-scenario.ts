@@ -12,7 +12,7 @@ import { CAUTION } from '../scenarios/summary.ts';
 import { withPitchScale } from '../tuning/schedule-fit.ts';
 import { searchTrades, type TradeResult, type TriedCandidate } from '../tuning/trade-search.ts';
 import { controllerPathOf, requireGains, withTunedLaw } from './controller-file.ts';
-import { withGains } from './loop-view.ts';
+import { pitchLawOf, withGains } from './loop-view.ts';
 import { RunJournal } from './run-journal.ts';
 import { scheduleText } from './schedule-text.ts';
 import type { ScenarioOptions } from './tune.ts';
@@ -91,9 +91,8 @@ export async function tuneByScenario(files: readonly string[], options: Scenario
 }
 
 function startOf({ controller }: ScenarioData, file: string): Start {
-  const law = controller.kind === 'laws' ? controller.laws.find((l) => l.law === 'scheduled PI pitch') : undefined;
-  if (controller.kind !== 'laws' || law?.law !== 'scheduled PI pitch')
-    throw refusal(file, 'there is no law with gains to tune');
+  const law = pitchLawOf(controller);
+  if (controller.kind !== 'laws' || !law) throw refusal(file, 'there is no law with gains to tune');
   if (!(law.proportional > 0 && law.integral > 0))
     throw refusal(file, 'the search needs gains above zero to start from; try "galehold tune formula"');
   const { proportional, integral, speedFilter } = law;
@@ -231,11 +230,8 @@ async function tell(
 ): Promise<void> {
   const subject = await scenarioSubject(files[0], set);
   const { scenario, turbine } = subject;
-  const law =
-    scenario.controller.kind === 'laws'
-      ? scenario.controller.laws.find((l) => l.law === 'scheduled PI pitch')
-      : undefined;
-  if (law?.law !== 'scheduled PI pitch') throw new Error('the controller has lost its pitch law');
+  const law = pitchLawOf(scenario.controller);
+  if (!law) throw new Error('the controller has lost its pitch law');
   const { filterFrequency, pitchScale, ...gains } = gainsOf(start, chosen.variables);
   const schedule = withPitchScale(law.schedule, pitchScale);
   const percent = (values: readonly number[]) =>

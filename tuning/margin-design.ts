@@ -258,7 +258,7 @@ function refuseGrowth(task: MarginDesignTask, { turbine, plant }: SpreadPlant): 
   throw new RangeError(growthText(plant.point.windSpeed, growing, most));
 }
 
-export function growthText(windSpeed: number, { pole, frequency }: Mode, state: string): string {
+function growthText(windSpeed: number, { pole, frequency }: Mode, state: string): string {
   return (
     `at ${windSpeed.toFixed(1)} m/s the machine is unstable with its pitch held: "${state}" swings at ` +
     `${(frequency / (2 * Math.PI)).toFixed(2)} Hz and grows by a factor e in ${(1 / pole.re).toFixed(1)} s. Margins against less gain cannot be had; steady it first: ` +

@@ -4,6 +4,7 @@ import type { Turbine } from '../sim/turbine.ts';
 import { type Complex, exponential, ONE, power, product, quotient, scaled, sum } from './complex.ts';
 import { type DelayedStep, delayedStep, heldStep } from './discretisation.ts';
 import { type LinearPlant, PLANT_OUTPUTS, type PlantOutput } from './linear-plant.ts';
+import { discreteLyapunov } from './lyapunov.ts';
 import type { LawInput, SampledLaw } from './sampled-law.ts';
 import { responseAt } from './state-space.ts';
 
@@ -26,6 +27,8 @@ export interface LoopInputs {
   /** Deviation of the wind, m/s, and of the generator's speed set-point, rad/s. */
   wind: number;
   setpoint: number;
+  /** Added to what the speed sensor shows, rad/s; none when absent. */
+  noise?: number;
 }
 
 /** The plant's answers at one frequency, sampled and seen through the sensors: one entry a law input. */
@@ -124,7 +127,8 @@ export class SampledLoop {
       const now = sensorInput(sensor, outputs, inputs);
       state[at] = now;
       state[at + 1] = sensor.pole * before + sensor.fromLast * last + sensor.fromNow * now;
-      return sensor.delay === 1 ? before : state[at + 1];
+      const shown = sensor.delay === 1 ? before : state[at + 1];
+      return sensor.reads === 'generator speed' ? shown + (inputs.noise ?? 0) : shown;
     });
     const memory = state.slice(memoryAt);
     const [pitch, torque] = [0, 1].map((row) => rowTimes(law.c, row, memory) + rowTimes(law.d, row, measured));
@@ -161,6 +165,20 @@ export class SampledLoop {
     }
     return a;
   }
+}
+
+/**
+ * Standard deviation of a state of the closed loop under white noise of a standard deviation `noise` (rad/s) on what the
+ * speed sensor shows; in the unit of the state.
+ * @throws RangeError where the loop does not settle
+ */
+export function spreadByNoise(loop: SampledLoop, state: string, noise: number): number {
+  const pushed = new Float64Array(loop.states.length);
+  loop.step(pushed, { pitch: 0, wind: 0, setpoint: 0, noise });
+  const push = Matrix.columnVector([...pushed]);
+  const covariance = discreteLyapunov(loop.closedLoop(), push.mmul(push.transpose()));
+  const at = loop.states.indexOf(state);
+  return Math.sqrt(covariance.get(at, at));
 }
 
 /** The law's answer [demand][input] at a complex frequency z. */

@@ -11,7 +11,7 @@ import { interpolatedGain, measureLoop } from '../../tuning/measured-loop.ts';
 import { modesOf, sampledModesOf } from '../../tuning/modes.ts';
 import { rotorSlopes } from '../../tuning/rotor-slopes.ts';
 import { sampledLaw } from '../../tuning/sampled-law.ts';
-import { type LoopInputs, SampledLoop } from '../../tuning/sampled-loop.ts';
+import { type LoopInputs, SampledLoop, spreadByNoise } from '../../tuning/sampled-loop.ts';
 import { transmissionZeros } from '../../tuning/transmission-zeros.ts';
 import { channelOf, controllerData, loopAt, MACHINE, ROTOR, runSetup, SURFACE, TRIM, TURBINE } from './demo-machine.ts';
 
@@ -136,6 +136,21 @@ describe('linear steps', () => {
     const deviation = simulated.map((speed) => speed - generatorSpeed);
     const linear = linearResponse(16, deviation.length, { pitch: push, wind: 0, setpoint: 0 });
     expect(distance(linear, deviation)).toBeLessThan(0.02);
+  });
+});
+
+describe('noise of the speed sensor', () => {
+  it('spreads the pitch rate as the covariance says, and as the simulation does', () => {
+    const noise = 0.05;
+    const setup = runSetup(16, controllerData(), 400);
+    const { controlSpeed } = TURBINE.sensors;
+    const noisy = { ...TURBINE, sensors: { ...TURBINE.sensors, controlSpeed: { ...controlSpeed, noise } } };
+    const rate = channelOf({ ...setup, turbine: noisy }, 'pitch_rate_1_deg_s').slice(5000);
+    const mean = rate.reduce((sum, value) => sum + value, 0) / rate.length;
+    const spread = Math.sqrt(rate.reduce((sum, value) => sum + (value - mean) ** 2, 0) / rate.length);
+    const expected = spreadByNoise(loopAt(TRIM.at(16), controllerData()), 'pitch: rate (collective)', noise);
+    expect(spread / expected).toBeGreaterThan(0.95);
+    expect(spread / expected).toBeLessThan(1.05);
   });
 });
 
