@@ -18,8 +18,8 @@ export interface Section {
   charts?: readonly Chart[];
 }
 
-/** A page of sections, charts two in a row. */
-export function reportPage(title: string, sections: readonly Section[]): string {
+/** A page of sections, charts two in a row; with a closing line where there is one to say. */
+export function reportPage(title: string, sections: readonly Section[], closing = ''): string {
   return `<!doctype html>
 <html lang="en">
 <head>
@@ -44,6 +44,7 @@ th { color: var(--faint); font-weight: 600; }
 <body>
 <h1>${escaped(title)}</h1>
 ${sections.map(sectionText).join('\n')}
+<footer><p>${escaped(closing)}</p></footer>
 </body>
 </html>
 `;

@@ -267,7 +267,7 @@ async function tell(
   const rated = ratedPoints(files[0], subject, trimAll(files[0], subject, evenWinds(turbine, 50)).points);
   const tuned = withGains(scenario.controller, gains, schedule, filterFrequency);
   const sections = [frontSection(result, chosen, found, start), ...loopSections(subject, tuned, rated, PEAK_SHOWN)];
-  await writeAsked(report, reportPage(`${turbine.name}: pitch gains by search`, sections));
+  await writeAsked(report, reportPage(`${turbine.name}: pitch gains by search`, sections, CAUTION));
   console.log(`Report: ${report}`);
 }
 

@@ -114,6 +114,36 @@ describe('schedules', () => {
   });
 });
 
+describe('the spread of machines', () => {
+  it('holds every pair of densities and inertias, each trimmed in its own air', () => {
+    const machines = machineSpread(TURBINE, SURFACE, COMMON_SPREAD).at(16);
+    expect(machines).toHaveLength(9);
+    const find = (words: string) => {
+      const found = machines.find(({ machine }) => machine === words);
+      if (!found) throw new Error(`no machine "${words}" among ${machines.map(({ machine }) => machine).join('; ')}`);
+      return found;
+    };
+    const given = find('as given');
+    expect(given.nominal).toBe(true);
+    expect(given.plant.point.pitch).toBeCloseTo(TRIM.at(16).pitch, 9);
+    const heavy = find('inertia +10 %');
+    const row = given.plant.states.indexOf('drivetrain: rotor speed');
+    const column = given.plant.states.indexOf('pitch: angle (collective)');
+    expect(given.plant.a.get(row, column) / heavy.plant.a.get(row, column)).toBeCloseTo(1.1, 6);
+    const generator = given.plant.states.indexOf('drivetrain: generator speed');
+    const twist = given.plant.states.indexOf('drivetrain: shaft twist');
+    expect(given.plant.a.get(generator, twist) / heavy.plant.a.get(generator, twist)).toBeCloseTo(1.1, 6);
+    expect(heavy.plant.point.pitch).toBe(given.plant.point.pitch);
+    // Thin air carries less power: the blades stand finer.
+    expect(find('density -10 %').plant.point.pitch).toBeLessThan(given.plant.point.pitch - 0.01);
+    expect(find('density +10 %').turbine.airDensity).toBeCloseTo(1.1 * TURBINE.airDensity, 9);
+  });
+
+  it('leaves out machines whose air is too thin for rated power', () => {
+    expect(machineSpread(TURBINE, SURFACE, COMMON_SPREAD).at(10.1).length).toBeLessThan(9);
+  });
+});
+
 describe('gains by margin', () => {
   const winds = (count: number, from: number) =>
     Array.from({ length: count }, (_, i) => from + ((25 - from) * i) / (count - 1));
