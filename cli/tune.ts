@@ -91,7 +91,7 @@ export function registerTune(program: Command): void {
     .option('--slope <percent>', 'how far the slopes on pitch stray', '20')
     .addHelpText(
       'after',
-      '\nExample:\n  galehold tune margin 04-operating-gust.yaml --sensitivity-peak 1.8 --report margin.html',
+      '\nExample:\n  galehold tune margin 04-operating-gust.yaml --set controller.laws.1.above_rated=constant_torque --report margin.html',
     )
     .action(async (file: string, options: MarginOptions) => {
       const { tuneByMargin } = await import('./tune-margin.ts');
@@ -111,7 +111,10 @@ export function registerTune(program: Command): void {
     .option('--seed <number>', 'seed of the search itself', '1')
     .option('--journal <file>', 'where finished simulations are kept (default: beside --out)')
     .option('--workers <count>', 'number of worker threads (default: one a core)')
-    .addHelpText('after', '\nExample:\n  galehold tune scenario 17-turbulence.yaml --seeds 1..6 --report search.html')
+    .addHelpText(
+      'after',
+      '\nExample:\n  galehold tune scenario 17-normal-turbulence.yaml --seeds 1..6 --report search.html',
+    )
     .action(async (files: string[], options: ScenarioOptions) => {
       const { tuneByScenario } = await import('./tune-scenario.ts');
       await tuneByScenario(files, options);
