@@ -1,4 +1,5 @@
 /** Points on the rotor: the hub, and rings of points on spokes. */
+import type { WindField } from './wind.ts';
 
 export interface PolarGrid {
   /** Of the outermost ring, which is the blades' tip, m. */
@@ -87,20 +88,16 @@ export interface PolarSeries {
  * outermost ring it takes the ring's value. Allocates nothing. All points of one instant are blended once and kept for
  * the next questions at that instant, since a rotor asks for all its sections at a time.
  */
-export function polarReader({ grid, period, samples, values }: PolarSeries) {
+export function polarReader({ grid, period, samples, values }: PolarSeries): WindField['velocity'] {
   const { radius, rings, spokes } = grid;
   const perMetre = rings / radius;
   const perRadian = spokes / (2 * Math.PI);
   const perSecond = samples / period;
   const stride = 3 * pointCount(grid);
-  const row = spokes + 2;
   const outermost = rings * (1 - Number.EPSILON);
-  const source = Int32Array.from({ length: 3 * row * (rings + 1) }, (_, i) => {
-    const cell = Math.floor(i / 3);
-    const ring = Math.floor(cell / row);
-    return (i % 3) + (ring === 0 ? 0 : 3 * (1 + (ring - 1) * spokes + ((cell % row) % spokes)));
-  });
-  const now = new Float64Array(source.length);
+  const lastSpoke = spokes - 1;
+  const ringStride = 3 * spokes;
+  const now = new Float64Array(stride);
   const blendedAt = new Float64Array(1).fill(Number.NaN);
 
   function blend(t: number): void {
@@ -108,12 +105,12 @@ export function polarReader({ grid, period, samples, values }: PolarSeries) {
     const instant = t * perSecond;
     const floor = Math.floor(instant);
     const laterShare = instant - floor;
-    const sample = ((floor % samples) + samples) % samples;
-    const early = sample * stride;
+    const sample = (((floor % samples) + samples) % samples) | 0;
+    const early = (sample * stride) | 0;
     const late = sample + 1 === samples ? 0 : early + stride;
-    for (let i = 0; i < now.length; i++) {
-      const before = values[early + source[i]];
-      now[i] = before + laterShare * (values[late + source[i]] - before);
+    for (let i = 0; i < stride; i++) {
+      const before = values[early + i];
+      now[i] = before + laterShare * (values[late + i] - before);
     }
   }
 
@@ -125,14 +122,14 @@ export function polarReader({ grid, period, samples, values }: PolarSeries) {
     const outerShare = rho - inner;
     // (y, z) = (−r sin ψ, r cos ψ)
     const azimuth = angleOf(-y, z) * perRadian;
-    const spoke = azimuth | 0;
+    const spoke = Math.min(azimuth | 0, lastSpoke);
     const nextShare = azimuth - spoke;
 
-    // One row of spokes a ring, the first repeated as the last; the hub stands for all points of the ring of radius 0.
-    const a = 3 * (inner * row + spoke);
-    const b = a + 3;
-    const c = a + 3 * row;
-    const d = c + 3;
+    const c = 3 + inner * ringStride + 3 * spoke;
+    const d = spoke === lastSpoke ? c + 3 - ringStride : c + 3;
+    // The hub stands for all points of the ring of radius 0.
+    const a = inner === 0 ? 0 : c - ringStride;
+    const b = inner === 0 ? 0 : d - ringStride;
     const ua = now[a] + nextShare * (now[b] - now[a]);
     const va = now[a + 1] + nextShare * (now[b + 1] - now[a + 1]);
     const wa = now[a + 2] + nextShare * (now[b + 2] - now[a + 2]);
