@@ -11,7 +11,7 @@ export function registerDemo(program: Command): void {
         'scenarios are meant to break their limits and say so.',
     )
     .option('--out <folder>', 'where results and page go', 'results/demo')
-    .addHelpText('after', '\nExample:\n  galehold demo --out /tmp/galehold-demo')
+    .addHelpText('after', '\nExample:\n  galehold demo --out my-demo')
     .action(async ({ out }: { out: string }) => {
       const [{ runScenarios }, { shippedScenarios }] = await Promise.all([
         import('./scenario-runs.ts'),

@@ -98,9 +98,13 @@ function torqueLaw(machine: Machine) {
     cut_in_speed: speed('below which the torque is zero'),
     optimal_from: speed('from which torque = k speed² holds, after a straight line from the cut-in speed'),
     optimal_to: speed('up to which it holds, before a straight line to rated torque at rated speed'),
-    handover_pitch: quantity('angle', 'Pitch above fine pitch at which rated torque or power is kept down to optimal_to', {
-      above: 0,
-    }),
+    handover_pitch: quantity(
+      'angle',
+      'Pitch above fine pitch at which rated torque or power is kept down to optimal_to',
+      {
+        above: 0,
+      },
+    ),
     maximum_torque: quantity('torque', 'Largest torque demand', { above: 0, rated: machine.ratedTorque }),
     rate_limit: quantity('torque rate', 'Fastest change of the demand', { above: 0 }),
   })

@@ -9,7 +9,13 @@ const LAST_PITCH = 1;
 
 /** @type {import('galehold/contract').ControllerFactory<Record<string, number>>} */
 export default function ownLaw(settings, machine) {
-  const { sample_time: sampleTime, proportional, integral, halving_pitch: halvingPitch, rate_limit: rateLimit } = settings;
+  const {
+    sample_time: sampleTime,
+    proportional,
+    integral,
+    halving_pitch: halvingPitch,
+    rate_limit: rateLimit,
+  } = settings;
   const limit = (value, low, high) => Math.min(Math.max(value, low), high);
 
   return {
