@@ -51,6 +51,10 @@ export function registerTune(program: Command): void {
     .summary('find gains, schedule and filter for the pitch loop, with the reasons')
     .description(
       'Find gains, schedule and filter for the pitch loop; writes a controller file that says how each came about.',
+    )
+    .addHelpText(
+      'after',
+      '\nExample:\n  galehold tune formula 04-operating-gust.yaml --frequency 0.5 --report formula.html',
     );
 
   common(tune.command('formula'))
