@@ -15,6 +15,9 @@ import { writeAsked } from './whole-file.ts';
 import { evenWinds, optionNumber, optionValue } from './wind-range.ts';
 
 const DEGREE = Math.PI / 180;
+const QUASI_STEADY =
+  'The design takes a rotor without memory; wake and bending blades take some of the margins back: see ' +
+  '"galehold margins" with "--rotor blade_element".';
 const DESIGN_WINDS = 24;
 const PROOF_WINDS = 50;
 
@@ -83,7 +86,7 @@ export async function tuneByMargin(file: string, options: MarginOptions): Promis
     `  proportional ${gains.proportional.toPrecision(4)} s, integral ${gains.integral.toPrecision(4)}, ${scheduleText(schedule)}`,
   );
   console.log(`  ${tightText}`);
-  console.log(`Written to ${options.out}.`);
+  console.log(`Written to ${options.out}.\n${QUASI_STEADY}`);
   if (options.report === undefined) return;
   const sections = [
     summary(design, asked, over, tightText),
@@ -101,6 +104,7 @@ function summary(design: MarginDesign, asked: string, over: string, tightText: s
       `Asked: ${asked}, over ${over}.`,
       `Found: proportional ${gains.proportional.toPrecision(4)} s, integral ${gains.integral.toPrecision(4)} (integral time ${integralTime.toFixed(2)} s), times ${scheduleText(schedule)}. The loop is ${tightText}.`,
       `The schedule is the smallest within reach: on average ${(100 * fit.meanError).toFixed(1)} % below the largest gain of each wind speed. Others: ${fits.map((each) => `${scheduleText(each.schedule)} ${(100 * each.meanError).toFixed(1)} %`).join('; ')}.`,
+      QUASI_STEADY,
       'What a slower or faster loop would cost: the second chart shows how much of the tightest margin is used at each wind speed; 100 % is the margin as asked.',
     ],
     charts: [
