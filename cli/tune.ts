@@ -95,7 +95,7 @@ export function registerTune(program: Command): void {
     .option('--slope <percent>', 'how far the slopes on pitch stray', '20')
     .addHelpText(
       'after',
-      '\nExample:\n  galehold tune margin 04-operating-gust.yaml --set controller.laws.1.above_rated=constant_torque --report margin.html',
+      '\nExample:\n  galehold tune margin 04-operating-gust.yaml --report margin.html',
     )
     .action(async (file: string, options: MarginOptions) => {
       const { tuneByMargin } = await import('./tune-margin.ts');

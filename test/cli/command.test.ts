@@ -50,7 +50,7 @@ describe('galehold run', () => {
   });
 
   it('ends with 1 when a limit breaks that should hold', () => {
-    const { status, stdout } = galehold('run', GUST, '--set', 'controller.laws.0.proportional=0.002 s');
+    const { status, stdout } = galehold('run', GUST, '--set', 'limits.0.below=1.05 rated');
     expect(status).toBe(1);
     expect(stdout).toMatch(/NOT AS EXPECTED/);
   });
@@ -58,7 +58,7 @@ describe('galehold run', () => {
   it('ends with 1 when limits hold that were expected to break, and with 0 when they do break', () => {
     const expectBroken = ['--set', 'expect={verdict: broken, because: a test}'];
     expect(galehold('run', GUST, ...expectBroken).status).toBe(1);
-    const broken = galehold('run', GUST, ...expectBroken, '--set', 'controller.laws.0.proportional=0.002 s');
+    const broken = galehold('run', GUST, ...expectBroken, '--set', 'limits.0.below=1.05 rated');
     expect(broken.status).toBe(0);
     expect(broken.stdout).toContain('expected to break: a test');
   });

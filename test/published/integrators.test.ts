@@ -76,6 +76,8 @@ describe('The extrapolation method', () => {
     const growing: Derivative = (_t, x, dx) => {
       dx[0] = x[0] * x[0];
     };
-    expect(() => odex(growing, [1], 1e-6).advance(0, 2, Float64Array.of(1))).toThrow(/endless small steps|steps exceeded/);
+    expect(() => odex(growing, [1], 1e-6).advance(0, 2, Float64Array.of(1))).toThrow(
+      /endless small steps|steps exceeded/,
+    );
   });
 });

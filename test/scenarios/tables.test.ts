@@ -22,7 +22,11 @@ describe('Wind from a CSV file', () => {
       'wind.csv:4:1: time must rise from row to row, but 10 s follows 20 s',
     ],
     ['with a hole', 'time (s), speed (m/s)\n0, 10\n20, NaN\n60, 12\n', 'wind.csv:3:5: "NaN" is not a number'],
-    ['with an empty cell', 'time (s);speed (m/s)\n0;10\n20;\n60;12\n', 'wind.csv:3:4: no value stands here, and none is invented'],
+    [
+      'with an empty cell',
+      'time (s);speed (m/s)\n0;10\n20;\n60;12\n',
+      'wind.csv:3:4: no value stands here, and none is invented',
+    ],
     ['of one row', 'time (s), speed (m/s)\n0, 10\n', 'wind.csv:1:1: at least 2 item(s) are due here'],
     [
       'without units',
