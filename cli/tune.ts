@@ -93,10 +93,7 @@ export function registerTune(program: Command): void {
     .option('--density <percent>', 'how far the air’s density strays', '10')
     .option('--inertia <percent>', 'how far the inertias stray', '10')
     .option('--slope <percent>', 'how far the slopes on pitch stray', '20')
-    .addHelpText(
-      'after',
-      '\nExample:\n  galehold tune margin 04-operating-gust.yaml --report margin.html',
-    )
+    .addHelpText('after', '\nExample:\n  galehold tune margin 04-operating-gust.yaml --report margin.html')
     .action(async (file: string, options: MarginOptions) => {
       const { tuneByMargin } = await import('./tune-margin.ts');
       await tuneByMargin(file, options);
