@@ -1,5 +1,6 @@
 #!/usr/bin/env node
 import { Command } from 'commander';
+import { widenInlining } from '../scenarios/inlining.ts';
 import { VERSION } from '../scenarios/version.ts';
 import { registerBlade } from './blade.ts';
 import { registerDemo } from './demo.ts';
@@ -13,6 +14,8 @@ import { registerTrim } from './trim.ts';
 import { registerTune } from './tune.ts';
 import { registerView } from './view.ts';
 import { registerWind } from './wind.ts';
+
+widenInlining();
 
 const program = new Command('galehold')
   .description(

@@ -16,6 +16,7 @@ export { Trim, type TrimPoint } from '../sim/trim.ts';
 export type { Turbine } from '../sim/turbine.ts';
 export type { WindField } from '../sim/wind/wind.ts';
 export { loadScenario, loadTurbine, shippedFolder, shippedScenarios } from './disk.ts';
+export { widenInlining } from './inlining.ts';
 export { InputError, type Problem } from './input-error.ts';
 export { OutputError, writeResult } from './results.ts';
 export { type RunResult, runScenario, setUp } from './run.ts';

@@ -9,6 +9,7 @@
  */
 import { join } from 'node:path';
 import { loadScenario, shippedFolder } from '../../scenarios/disk.ts';
+import { widenInlining } from '../../scenarios/inlining.ts';
 import { runScenario, setUp } from '../../scenarios/run.ts';
 import type { ScenarioData } from '../../scenarios/scenario.ts';
 import { surfaceOf } from '../../sim/aerodynamics/surface-rotor.ts';
@@ -72,6 +73,7 @@ export interface RunSpeed {
 }
 
 async function measure({ rotor, wind, integrator }: Choice): Promise<RunSpeed> {
+  widenInlining();
   const shipped = await loadScenario(join(shippedFolder(), '04-operating-gust.yaml'));
   const scenario: ScenarioData = {
     ...shipped,
