@@ -1,8 +1,8 @@
 /** The blades at an instant as one picture: triangles to scale, and angles of attack between the angles of stall. */
 import type { BladeInstant } from './blade-instant.ts';
 import { instantText } from './blade-instant.ts';
-import { degrees, escaped, INK, MARGIN, PANEL_WIDTH, type Panel, px, svgText, trianglePanel } from './blade-picture.ts';
-import { CHART_STYLE, type ChartLine, chartPicture } from './chart-picture.ts';
+import { degrees, INK, MARGIN, PANEL_WIDTH, type Panel, px, svgText, trianglePanel } from './blade-picture.ts';
+import { CHART_STYLE, type ChartLine, chartPicture, escaped } from './chart-picture.ts';
 
 const DEGREE = Math.PI / 180;
 /** Stations of each blade whose triangles are drawn: five, from root to tip. */
@@ -60,7 +60,7 @@ export function instantPage(instant: BladeInstant): string {
 <title>${title}</title>
 <style>${CHART_STYLE}
 body { margin: 1rem auto; max-width: 2040px; padding: 0 1rem; font-family: system-ui, sans-serif; color: var(--ink); background: var(--ground); }
-svg { width: 100%; height: auto; }
+body > svg { width: 100%; height: auto; }
 .attack { max-width: 900px; }
 pre { overflow-x: auto; font-size: 0.8rem; }
 </style>
@@ -86,8 +86,8 @@ function attackChart({ blades }: BladeInstant): string {
   });
   return chartPicture({
     title: 'Angle of attack along the blades, and the angles of stall',
-    xLabel: 'radius, m',
-    yLabel: 'angle of attack, deg',
+    x: { label: 'radius, m' },
+    y: { label: 'angle of attack, deg' },
     lines: [
       ...blades.map(
         (blade, b): ChartLine => ({

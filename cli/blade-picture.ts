@@ -2,6 +2,7 @@
 import { type VelocityTriangle, velocityTriangles } from '../sim/aerodynamics/velocity-triangles.ts';
 import { bladeText, pointText, totalsText } from './blade-text.ts';
 import type { BladeView } from './blade-view.ts';
+import { escaped } from './chart-picture.ts';
 
 /** Okabe and Ito, *Color Universal Design*, 2008. */
 export const INK = '#000000';
@@ -318,10 +319,6 @@ interface TextStyle {
 export const px = (value: number): string => String(Math.round(10 * value) / 10);
 /** To a tenth; what rounds to nothing has no sign. */
 export const degrees = (angle: number): string => `${(Math.round((10 * angle) / DEGREE) / 10 + 0).toFixed(1)}°`;
-
-export function escaped(words: string): string {
-  return words.replaceAll('&', '&amp;').replaceAll('<', '&lt;').replaceAll('>', '&gt;');
-}
 
 /** Words; "v_t" and its like get their index set low. */
 export function svgText(at: Point, words: string, style: TextStyle = {}): string {

@@ -1,199 +1,308 @@
-/** Charts in plain SVG: linear or logarithmic axes, lines and points, for reports that need no script. */
+/** Charts as plain SVG under their title and key: lines, points and bands over linear or logarithmic axes. */
+
+export interface ChartAxis {
+  label: string;
+  logarithmic?: boolean;
+  /** What to show, where it is not all that there is. */
+  range?: readonly [number, number];
+}
 
 export interface ChartLine {
-  label: string;
+  /** Stands in the key; a line without one is not in it. */
+  label?: string;
   x: ArrayLike<number>;
   y: ArrayLike<number>;
   /** Points instead of a line. */
   points?: boolean;
-  /** Index of the line's colour; its place among the lines when absent. */
-  colour?: number;
+  /** Index of the line's colour, or the page's ink; its place among the lines when absent. */
+  colour?: number | 'ink';
   dashed?: boolean;
+  width?: number;
+}
+
+export interface ChartBand {
+  label: string;
+  x: ArrayLike<number>;
+  low: ArrayLike<number>;
+  high: ArrayLike<number>;
+  colour: number;
 }
 
 export interface Chart {
   title: string;
-  xLabel: string;
-  yLabel: string;
-  xLog?: boolean;
-  yLog?: boolean;
-  /** One unit is as long on both axes. */
+  x: ChartAxis;
+  y: ChartAxis;
+  /** One unit is as long on both axes: x is shown about its middle as far as y's scale reaches. */
   equal?: boolean;
-  /** What to show, where it is not all that there is. */
-  xRange?: readonly [number, number];
-  yRange?: readonly [number, number];
   lines: readonly ChartLine[];
+  bands?: readonly ChartBand[];
+  /** Thin upright lines. */
+  marks?: readonly number[];
+  /** Identifies the chart to the page's script, which finds the plotted area in its data attributes. */
+  id?: string;
+  width?: number;
+  height?: number;
 }
 
 /** Colours of lines, as custom properties of the page: Okabe and Ito, *Color Universal Design*, 2008. */
 export const CHART_STYLE = `
-:root { --ink: #17212b; --faint: #55626e; --grid: #dde3e8; --ground: #f5f7f8; --sheet: #ffffff;
+:root { color-scheme: light dark; --ink: #17212b; --faint: #55626e; --grid: #dde3e8; --ground: #f5f7f8; --sheet: #fff;
   --line-0: #0072b2; --line-1: #d55e00; --line-2: #009e73; --line-3: #cc79a7; --line-4: #e69f00; --line-5: #56b4e9; }
 @media (prefers-color-scheme: dark) { :root { --ink: #e6ebef; --faint: #a3b0bb; --grid: #2e3841; --ground: #0e1216;
   --sheet: #151b20; --line-0: #56b4e9; --line-1: #e69f00; --line-2: #009e73; --line-3: #cc79a7; --line-4: #f0e442;
   --line-5: #d55e00; } }
-.chart { background: var(--sheet); width: 100%; height: auto; }
-.chart text { fill: var(--ink); font-size: 13px; }
-.chart .title { font-weight: 600; font-size: 15px; }
-.chart .tick { fill: var(--faint); font-size: 12px; }
-.chart .grid { stroke: var(--grid); }
-.chart .frame { fill: none; stroke: var(--faint); }
+.chart { display: flex; flex-direction: column; margin: 0; min-width: 0; break-inside: avoid; }
+.chart figcaption { display: flex; flex-wrap: wrap; gap: 2px 18px; align-items: baseline; margin-bottom: 4px; }
+.chart h3 { font-size: 1rem; margin: 0; }
+.chart ul { display: flex; flex-wrap: wrap; gap: 0 16px; list-style: none; margin: 0; padding: 0; font-size: 13px; color: var(--faint); }
+.chart li svg { margin-right: 6px; }
+.chart > svg { width: 100%; height: auto; margin-top: auto; font: 12px system-ui, sans-serif; }
+.chart text { fill: var(--faint); } .chart .label { fill: var(--ink); }
+.chart .sheet { fill: var(--sheet); } .chart .grid { stroke: var(--grid); } .chart .frame { fill: none; stroke: var(--faint); }
+.chart .mark { stroke: var(--faint); stroke-dasharray: 2 3; } .chart .cursor { stroke: var(--ink); stroke-width: 1.4; }
+@media (max-width: 700px) { .chart > svg { font-size: 17px; } }
 `;
 
 const COLOURS = 6;
-const WIDTH = 640;
-const HEIGHT = 400;
-const PLOT = { left: 74, top: 40, right: 16, bottom: 54 };
-const LEGEND_ROW = 18;
-const LEGEND_GAP = 10;
-const LEGEND_COLUMN = 185;
+const MARGIN = { left: 80, right: 20, top: 8, bottom: 46 };
+/** About how far apart labels stand on an axis, in units of the picture. */
+const TICK_GAP = { x: 80, y: 48 };
+const DASHES = ' stroke-dasharray="6 4"';
+/** More points than this on one line are thinned to the lowest and highest of each stretch. */
+const MOST_POINTS = 1600;
+/** A logarithmic axis over a smaller ratio has too few powers of ten to be marked by them. */
+const LEAST_DECADES = 5;
+/** Over a smaller ratio, twos and fives are labelled too. */
+const FEW_DECADES = 30;
 
-interface Axis {
-  from: number;
-  to: number;
-  log: boolean;
-  ticks: readonly number[];
+interface Tick {
+  value: number;
+  label: string;
+}
+
+interface Scale {
+  ticks: readonly Tick[];
   at(value: number): number;
 }
 
-/** The chart as an SVG element. */
+interface Plot {
+  left: number;
+  right: number;
+  top: number;
+  bottom: number;
+  x: Scale;
+  y: Scale;
+}
+
+/** The chart as a figure element. */
 export function chartPicture(chart: Chart): string {
-  const shown = chart.lines.filter(({ label }) => label !== '');
-  const perRow = Math.max(1, Math.floor((WIDTH - PLOT.left) / LEGEND_COLUMN));
-  const legendHeight = Math.ceil(shown.length / perRow) * LEGEND_ROW;
-  const plotWidth = WIDTH - PLOT.left - PLOT.right;
-  const plotHeight = HEIGHT - PLOT.top - PLOT.bottom;
-  const height = HEIGHT + LEGEND_GAP + legendHeight;
-  const xValues = chart.lines.flatMap(({ x }) => Array.from(x));
-  const yValues = chart.lines.flatMap(({ y }) => Array.from(y));
-  let xRange = chart.xRange ?? rangeOf(xValues, chart.xLog);
-  const yRange = chart.yRange ?? rangeOf(yValues, chart.yLog);
-  if (chart.equal) {
+  const { title, id, width = 640, height = 340, lines, bands = [], marks = [] } = chart;
+  const plot = plotOf(chart, width, height);
+  const { left, right, top, bottom, x, y } = plot;
+  const box = `x="${left}" y="${top}" width="${right - left}" height="${bottom - top}"`;
+  const clip = `clip-${title.replace(/\W+/g, '-').toLowerCase()}`;
+  const data = id ? ` id="${id}" data-left="${left}" data-width="${right - left}" data-total="${width}"` : '';
+  return [
+    `<figure class="chart"><figcaption><h3>${escaped(title)}</h3>${key(chart)}</figcaption>`,
+    `<svg viewBox="0 0 ${width} ${height}" role="img" aria-label="${escaped(title)}"${data}>`,
+    `<clipPath id="${clip}"><rect ${box}/></clipPath>`,
+    `<rect ${box} class="sheet"/>`,
+    ...x.ticks.map(({ value, label }) => {
+      const at = px(x.at(value));
+      const text = label && `<text x="${at}" y="${bottom + 17}" text-anchor="middle">${label}</text>`;
+      return upright(value, 'grid', plot) + text;
+    }),
+    ...y.ticks.map(({ value, label }) => {
+      const at = px(y.at(value));
+      const text = label && `<text x="${left - 7}" y="${at}" dy="0.35em" text-anchor="end">${label}</text>`;
+      return `<line x1="${left}" x2="${right}" y1="${at}" y2="${at}" class="grid"/>${text}`;
+    }),
+    `<g clip-path="url(#${clip})">`,
+    ...marks.map((at) => upright(at, 'mark', plot)),
+    ...bands.map((band) => bandPath(band, plot)),
+    ...lines.map((line, i) => (line.points ? pointMarks(line, i, plot) : linePath(line, i, plot))),
+    id ? `<line class="cursor" x1="${left}" x2="${left}" y1="${top}" y2="${bottom}"/>` : '',
+    '</g>',
+    `<rect ${box} class="frame"/>`,
+    `<text x="${(left + right) / 2}" y="${height - 6}" text-anchor="middle" class="label">${escaped(chart.x.label)}</text>`,
+    `<text transform="translate(13 ${(top + bottom) / 2}) rotate(-90)" text-anchor="middle" class="label">${escaped(chart.y.label)}</text>`,
+    '</svg></figure>',
+  ].join('');
+}
+
+function plotOf({ x, y, equal, lines, bands = [] }: Chart, width: number, height: number): Plot {
+  const [left, right] = [MARGIN.left, width - MARGIN.right];
+  const [top, bottom] = [MARGIN.top, height - MARGIN.bottom];
+  let xRange =
+    x.range ??
+    rangeOf(
+      [...lines, ...bands].map((drawn) => drawn.x),
+      x.logarithmic,
+    );
+  const yRange =
+    y.range ??
+    rangeOf([...lines.map((line) => line.y), ...bands.flatMap(({ low, high }) => [low, high])], y.logarithmic);
+  if (equal) {
     const middle = 0.5 * (xRange[0] + xRange[1]);
-    const half = (0.5 * (yRange[1] - yRange[0]) * plotWidth) / plotHeight;
+    const half = (0.5 * (yRange[1] - yRange[0]) * (right - left)) / (bottom - top);
     xRange = [middle - half, middle + half];
   }
-  const x = axis(xRange, chart.xLog === true, PLOT.left, PLOT.left + plotWidth);
-  const y = axis(yRange, chart.yLog === true, PLOT.top + plotHeight, PLOT.top);
-  const clip = `clip-${hash(chart.title + chart.yLabel)}`;
-  const bottom = PLOT.top + plotHeight;
-
-  return [
-    `<svg class="chart" viewBox="0 0 ${WIDTH} ${height}" role="img" font-family="system-ui, sans-serif">`,
-    `<title>${escaped(chart.title)}</title>`,
-    `<defs><clipPath id="${clip}"><rect x="${PLOT.left}" y="${PLOT.top}" width="${plotWidth}" height="${plotHeight}"/></clipPath></defs>`,
-    `<text class="title" x="${PLOT.left}" y="24">${escaped(chart.title)}</text>`,
-    ...x.ticks.map(
-      (tick) =>
-        `<line class="grid" x1="${px(x.at(tick))}" x2="${px(x.at(tick))}" y1="${PLOT.top}" y2="${bottom}"/>` +
-        `<text class="tick" x="${px(x.at(tick))}" y="${bottom + 17}" text-anchor="middle">${tickText(tick)}</text>`,
-    ),
-    ...y.ticks.map(
-      (tick) =>
-        `<line class="grid" x1="${PLOT.left}" x2="${PLOT.left + plotWidth}" y1="${px(y.at(tick))}" y2="${px(y.at(tick))}"/>` +
-        `<text class="tick" x="${PLOT.left - 7}" y="${px(y.at(tick) + 4)}" text-anchor="end">${tickText(tick)}</text>`,
-    ),
-    `<rect class="frame" x="${PLOT.left}" y="${PLOT.top}" width="${plotWidth}" height="${plotHeight}"/>`,
-    `<text x="${PLOT.left + plotWidth / 2}" y="${bottom + 40}" text-anchor="middle">${escaped(chart.xLabel)}</text>`,
-    `<text transform="translate(18 ${PLOT.top + plotHeight / 2}) rotate(-90)" text-anchor="middle">${escaped(chart.yLabel)}</text>`,
-    `<g clip-path="url(#${clip})">`,
-    ...chart.lines.map((line, i) => drawn(line, line.colour ?? i, x, y)),
-    '</g>',
-    ...shown.map((line, i) => legendEntry(line, chart.lines.indexOf(line), i, perRow)),
-    '</svg>',
-  ].join('\n');
-}
-
-function drawn(line: ChartLine, colour: number, x: Axis, y: Axis): string {
-  const stroke = `var(--line-${colour % COLOURS})`;
-  if (line.points) {
-    return Array.from(line.x, (value, i) =>
-      Number.isFinite(line.y[i])
-        ? `<circle cx="${px(x.at(value))}" cy="${px(y.at(line.y[i]))}" r="3.5" fill="${stroke}" fill-opacity="0.8"/>`
-        : '',
-    ).join('');
-  }
-  let path = '';
-  let pen = 'M';
-  for (let i = 0; i < line.x.length; i++) {
-    const [h, v] = [x.at(line.x[i]), y.at(line.y[i])];
-    if (!Number.isFinite(h) || !Number.isFinite(v)) {
-      pen = 'M';
-      continue;
-    }
-    path += `${pen}${px(limited(h))} ${px(limited(v))}`;
-    pen = 'L';
-  }
-  const dash = line.dashed ? ' stroke-dasharray="6 4"' : '';
-  return `<path d="${path}" fill="none" stroke="${stroke}" stroke-width="2"${dash}/>`;
-}
-
-function legendEntry(line: ChartLine, place: number, index: number, perRow: number): string {
-  const left = PLOT.left + (index % perRow) * LEGEND_COLUMN;
-  const top = HEIGHT + LEGEND_GAP + Math.floor(index / perRow) * LEGEND_ROW;
-  const colour = `var(--line-${(line.colour ?? place) % COLOURS})`;
-  const mark = line.points
-    ? `<circle cx="${left + 11}" cy="${top - 4}" r="3.5" fill="${colour}"/>`
-    : `<line x1="${left}" x2="${left + 22}" y1="${top - 4}" y2="${top - 4}" stroke="${colour}" stroke-width="2"${line.dashed ? ' stroke-dasharray="6 4"' : ''}/>`;
-  return `${mark}<text x="${left + 28}" y="${top}">${escaped(line.label)}</text>`;
-}
-
-function rangeOf(values: readonly number[], log = false): [number, number] {
-  const usable = values.filter((value) => Number.isFinite(value) && (!log || value > 0));
-  const low = usable.reduce((least, value) => Math.min(least, value), Number.POSITIVE_INFINITY);
-  const high = usable.reduce((most, value) => Math.max(most, value), Number.NEGATIVE_INFINITY);
-  if (!(low < high)) return Number.isFinite(low) ? [low - 1, low + 1] : [0, 1];
-  if (log) return [low, high];
-  const spare = 0.05 * (high - low);
-  return [low - spare, high + spare];
-}
-
-function axis([from, to]: readonly [number, number], log: boolean, start: number, end: number): Axis {
-  const scale = log ? Math.log10 : (value: number) => value;
-  const [low, high] = [scale(from), scale(to)];
   return {
-    from,
-    to,
-    log,
-    ticks: log ? decades(from, to) : evenTicks(from, to),
-    at: (value) => start + ((scale(value) - low) / (high - low)) * (end - start),
+    left,
+    right,
+    top,
+    bottom,
+    x: scaleOf(xRange, x.logarithmic, [left, right], TICK_GAP.x),
+    y: scaleOf(yRange, y.logarithmic, [bottom, top], TICK_GAP.y),
   };
 }
 
-function decades(from: number, to: number): number[] {
-  const steps = to / from < 30 ? [1, 2, 5] : [1];
-  const first = Math.floor(Math.log10(from));
-  const last = Math.ceil(Math.log10(to));
-  return Array.from({ length: last - first + 1 }, (_, i) => 10 ** (first + i))
-    .flatMap((decade) => steps.map((step) => step * decade))
-    .filter((tick) => tick >= from * 0.999 && tick <= to * 1.001);
+function rangeOf(series: readonly ArrayLike<number>[], logarithmic = false): [number, number] {
+  let low = Number.POSITIVE_INFINITY;
+  let high = Number.NEGATIVE_INFINITY;
+  for (const values of series) {
+    for (let i = 0; i < values.length; i++) {
+      if (!Number.isFinite(values[i]) || (logarithmic && values[i] <= 0)) continue;
+      low = Math.min(low, values[i]);
+      high = Math.max(high, values[i]);
+    }
+  }
+  if (low > high) return logarithmic ? [1, 10] : [0, 1];
+  if (logarithmic) return low < high ? [low, high] : [low / 2, high * 2];
+  const spare = low < high ? 0.05 * (high - low) : 1;
+  return [low - spare, high + spare];
 }
 
-function evenTicks(from: number, to: number): number[] {
-  const rough = (to - from) / 6;
+function scaleOf(
+  [from, to]: readonly [number, number],
+  logarithmic = false,
+  [start, end]: readonly [number, number],
+  gap: number,
+): Scale {
+  const measure = logarithmic ? Math.log10 : (value: number) => value;
+  const [low, high] = [measure(from), measure(to)];
+  return {
+    ticks:
+      logarithmic && to / from >= LEAST_DECADES
+        ? decadeTicks(from, to)
+        : evenTicks(from, to, Math.abs(end - start) / gap),
+    at: (value) => start + ((measure(value) - low) / (high - low)) * (end - start),
+  };
+}
+
+/** Powers of ten with labels, and bare lines between. */
+function decadeTicks(from: number, to: number): Tick[] {
+  const labelled = to / from < FEW_DECADES ? [1, 2, 5] : [1];
+  const first = Math.floor(Math.log10(from));
+  return Array.from({ length: Math.ceil(Math.log10(to)) - first + 1 }, (_, i) => 10 ** (first + i))
+    .flatMap((decade) =>
+      [1, 2, 3, 4, 5, 6, 7, 8, 9].map((n) => ({
+        value: n * decade,
+        label: labelled.includes(n) ? tickText(n * decade) : '',
+      })),
+    )
+    .filter(({ value }) => value >= from * 0.999 && value <= to * 1.001);
+}
+
+function evenTicks(from: number, to: number, about: number): Tick[] {
+  const rough = (to - from) / about;
   const decade = 10 ** Math.floor(Math.log10(rough));
-  const step = [1, 2, 5, 10].map((m) => m * decade).find((s) => s >= rough) ?? decade;
+  const step = decade * ([1, 2, 5, 10].find((n) => n * decade >= rough) ?? 10);
   const first = Math.ceil(from / step - 1e-9);
-  return Array.from({ length: Math.floor(to / step + 1e-9) - first + 1 }, (_, i) => (first + i) * step);
+  return Array.from({ length: Math.floor(to / step + 1e-9) - first + 1 }, (_, i) => {
+    const value = (first + i) * step;
+    return { value, label: tickText(value) };
+  });
 }
 
 function tickText(value: number): string {
-  return String(Number(value.toPrecision(6)));
+  return String(Number(value.toPrecision(6))).replace('-', '−');
 }
 
+function upright(value: number, name: string, { x, top, bottom }: Plot): string {
+  const at = px(x.at(value));
+  return `<line x1="${at}" x2="${at}" y1="${top}" y2="${bottom}" class="${name}"/>`;
+}
+
+function pointMarks(line: ChartLine, place: number, { x, y }: Plot): string {
+  const colour = colourOf(line.colour ?? place);
+  return Array.from(line.x, (value, i) =>
+    Number.isFinite(y.at(line.y[i]))
+      ? `<circle cx="${px(x.at(value))}" cy="${px(y.at(line.y[i]))}" r="3" fill="${colour}" fill-opacity="0.85"/>`
+      : '',
+  ).join('');
+}
+
+/** The line, broken where a value is none. */
+function linePath(line: ChartLine, place: number, { x, y }: Plot): string {
+  let path = '';
+  let pen = 'M';
+  for (const [h, v] of thinned(line.x, line.y)) {
+    const [across, down] = [x.at(h), y.at(v)];
+    if (!Number.isFinite(across) || !Number.isFinite(down)) {
+      pen = 'M';
+      continue;
+    }
+    path += `${pen}${px(across)} ${px(down)}`;
+    pen = 'L';
+  }
+  const stroke = `stroke="${colourOf(line.colour ?? place)}" stroke-width="${line.width ?? 2}"`;
+  return `<path d="${path}" fill="none" ${stroke} stroke-linejoin="round"${line.dashed ? DASHES : ''}/>`;
+}
+
+/** The points, or of many the lowest and highest of each stretch in their order, so that no peak is lost. */
+function thinned(x: ArrayLike<number>, y: ArrayLike<number>): [number, number][] {
+  const count = x.length;
+  if (count <= MOST_POINTS) return Array.from(x, (value, i) => [value, y[i]]);
+  const stretch = (2 * count) / MOST_POINTS;
+  const kept: [number, number][] = [];
+  for (let from = 0; from < count; from += stretch) {
+    let [low, high] = [Math.floor(from), Math.floor(from)];
+    for (let i = Math.floor(from); i < Math.min(from + stretch, count); i++) {
+      if (y[i] < y[low] || Number.isNaN(y[low])) low = i;
+      if (y[i] > y[high] || Number.isNaN(y[high])) high = i;
+    }
+    for (const i of [Math.min(low, high), Math.max(low, high)]) kept.push([x[i], y[i]]);
+  }
+  return kept;
+}
+
+function bandPath(band: ChartBand, { x, y }: Plot): string {
+  const edge = (values: ArrayLike<number>) =>
+    Array.from(band.x, (value, i) => `${px(x.at(value))} ${px(y.at(values[i]))}`);
+  const outline = [...edge(band.low), ...edge(band.high).reverse()].join('L');
+  return `<path d="M${outline}Z" fill="${colourOf(band.colour)}" fill-opacity="0.2"/>`;
+}
+
+/** Samples of all that has a label, each label once; one alone is said by the title. */
+function key({ lines, bands = [] }: Chart): string {
+  const samples = new Map<string, string>();
+  lines.forEach(({ label, points, colour: own, dashed }, i) => {
+    if (label === undefined) return;
+    const colour = colourOf(own ?? i);
+    const sample = points
+      ? `<circle cx="11" cy="5" r="3" fill="${colour}"/>`
+      : `<line x1="0" x2="22" y1="5" y2="5" stroke="${colour}" stroke-width="2.4"${dashed ? DASHES : ''}/>`;
+    samples.set(label, sample);
+  });
+  for (const { label, colour } of bands) {
+    samples.set(label, `<rect width="22" height="10" fill="${colourOf(colour)}" fill-opacity="0.25"/>`);
+  }
+  if (samples.size < 2) return '';
+  const entries = Array.from(
+    samples,
+    ([label, sample]) => `<li><svg width="22" height="10" aria-hidden="true">${sample}</svg>${escaped(label)}</li>`,
+  );
+  return `<ul>${entries.join('')}</ul>`;
+}
+
+function colourOf(colour: number | 'ink'): string {
+  return colour === 'ink' ? 'var(--ink)' : `var(--line-${colour % COLOURS})`;
+}
+
+/** To a tenth, and not so far outside the picture that renderers lose their way. */
 function px(value: number): string {
-  return value.toFixed(1);
-}
-
-/** Renderers lose their way far outside the picture. */
-function limited(value: number): number {
-  return Math.max(-4000, Math.min(4000, value));
-}
-
-function hash(text: string): string {
-  let sum = 0;
-  for (const letter of text) sum = (sum * 31 + (letter.codePointAt(0) ?? 0)) >>> 0;
-  return sum.toString(36);
+  return Math.max(-4000, Math.min(4000, value)).toFixed(1);
 }
 
 export function escaped(text: string): string {

@@ -110,8 +110,8 @@ function summary(design: MarginDesign, asked: string, over: string, tightText: s
     charts: [
       {
         title: 'Proportional gain: what each wind speed allows',
-        xLabel: 'pitch, deg',
-        yLabel: 's',
+        x: { label: 'pitch, deg' },
+        y: { label: 's' },
         lines: [
           {
             label: 'largest at common time',
@@ -128,15 +128,14 @@ function summary(design: MarginDesign, asked: string, over: string, tightText: s
       },
       {
         title: 'Use of the tightest margin, worst machine',
-        xLabel: 'wind speed, m/s',
-        yLabel: '%',
+        x: { label: 'wind speed, m/s' },
+        y: { label: '%' },
         lines: [{ label: 'proof', x: proof.map((p) => p.windSpeed), y: proof.map((p) => 100 * p.kept.use) }],
       },
       {
         title: 'Integral gain: alone and with a common integral time',
-        xLabel: 'wind speed, m/s',
-        yLabel: '1',
-        yLog: true,
+        x: { label: 'wind speed, m/s' },
+        y: { label: '1', logarithmic: true },
         lines: [
           {
             label: 'fastest alone',

@@ -128,9 +128,9 @@ export function loopSections(
         nyquist(drawn, peak),
         poleMap(views),
         {
-          title: 'Rise of the wind by 1 m/s, linear',
-          xLabel: 'time, s',
-          yLabel: 'generator speed, rpm above set-point',
+          title: 'Generator speed after a rise of the wind by 1 m/s, linear',
+          x: { label: 'time, s' },
+          y: { label: 'rpm above set-point' },
           lines: drawn.map(({ point, step }) => ({
             label: windLabel(point.windSpeed),
             x: step.time,
@@ -164,7 +164,7 @@ function againstWind(
     dashed,
   });
   const lines = [line('tuned', tuned, false), ...(before.length > 0 ? [line('as it was', before, true)] : [])];
-  return { title, xLabel: 'wind speed, m/s', yLabel, lines };
+  return { title, x: { label: 'wind speed, m/s' }, y: { label: yLabel }, lines };
 }
 
 function bode(views: readonly LoopView[], part: 'gain' | 'phase'): Chart {
@@ -183,10 +183,8 @@ function bode(views: readonly LoopView[], part: 'gain' | 'phase'): Chart {
   const isGain = part === 'gain';
   return {
     title: isGain ? 'Size of the loop’s gain' : 'Angle of the loop’s gain',
-    xLabel: 'frequency, rad/s',
-    yLabel: isGain ? '|L|' : 'deg',
-    xLog: true,
-    yLog: isGain,
+    x: { label: 'frequency, rad/s', logarithmic: true },
+    y: { label: isGain ? '|L|' : 'deg', logarithmic: isGain },
     lines,
   };
 }
@@ -206,11 +204,9 @@ function nyquist(views: readonly LoopView[], peak: number): Chart {
   const edge: ChartLine = { label: 'the edge, −1', x: [-1], y: [0], points: true, colour: 5 };
   return {
     title: 'Nyquist’s curve',
-    xLabel: 'Re L',
-    yLabel: 'Im L',
+    x: { label: 'Re L', range: [-2.2, 0.6] },
+    y: { label: 'Im L', range: [-1.6, 0.8] },
     equal: true,
-    xRange: [-2.2, 0.6],
-    yRange: [-1.6, 0.8],
     lines: [...curves, circle, edge],
   };
 }
@@ -221,10 +217,8 @@ function poleMap(views: readonly LoopView[]): Chart {
   const bands = Array.from({ length: Math.ceil(views.length / size) }, (_, i) => views.slice(i * size, (i + 1) * size));
   return {
     title: 'Poles of the closed loop against wind',
-    xLabel: 'real part, 1/s',
-    yLabel: 'imaginary part, rad/s',
-    xRange: [-3, 0.2],
-    yRange: [-0.1, 3],
+    x: { label: 'real part, 1/s', range: [-3, 0.2] },
+    y: { label: 'imaginary part, rad/s', range: [-0.1, 3] },
     lines: bands.map((band) => {
       const poles = band.flatMap(({ modes }) => modes.map(({ pole }) => pole));
       return {
@@ -245,8 +239,8 @@ function schedulePicture(tuned: ControllerData, points: readonly TrimPoint[]): C
   const pitch = Array.from({ length: 120 }, (_, i) => (last * i) / 119);
   return {
     title: 'Schedule: proportional gain against pitch',
-    xLabel: 'pitch, deg',
-    yLabel: 's',
+    x: { label: 'pitch, deg' },
+    y: { label: 's' },
     lines: [
       { label: 'as scheduled', x: pitch.map((angle) => angle / DEGREE), y: pitch.map((angle) => gain * factor(angle)) },
     ],

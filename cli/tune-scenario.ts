@@ -11,6 +11,7 @@ import type { ScenarioData } from '../scenarios/scenario.ts';
 import { CAUTION } from '../scenarios/summary.ts';
 import { withPitchScale } from '../tuning/schedule-fit.ts';
 import { searchTrades, type TradeResult, type TriedCandidate } from '../tuning/trade-search.ts';
+import type { Chart } from './chart-picture.ts';
 import { controllerPathOf, requireGains, withTunedLaw } from './controller-file.ts';
 import { pitchLawOf, withGains } from './loop-view.ts';
 import { RunJournal } from './run-journal.ts';
@@ -286,10 +287,10 @@ function thinned<T>(items: readonly T[], count: number): T[] {
 
 function frontSection({ tried, front }: TradeResult, chosen: TriedCandidate, found: string, start: Start): Section {
   const usable = tried.filter(({ broken }) => broken === 0);
-  const pair = (first: number, second: number) => ({
+  const pair = (first: number, second: number): Chart => ({
     title: capitalised(`${OBJECTIVES[second].label} against ${OBJECTIVES[first].label}`),
-    xLabel: `${OBJECTIVES[first].label}, over the start's`,
-    yLabel: `${OBJECTIVES[second].label}, over the start's`,
+    x: { label: OBJECTIVES[first].label, range: [0.5, 1.8] },
+    y: { label: OBJECTIVES[second].label, range: [0.5, 1.8] },
     lines: [
       {
         label: 'tried',
@@ -308,15 +309,13 @@ function frontSection({ tried, front }: TradeResult, chosen: TriedCandidate, fou
       { label: 'start', points: true, colour: 2, x: [1], y: [1] },
       { label: 'chosen', points: true, colour: 1, x: [chosen.objectives[first]], y: [chosen.objectives[second]] },
     ],
-    xRange: [0.5, 1.8] as const,
-    yRange: [0.5, 1.8] as const,
   });
   return {
     heading: 'What was searched, what was found',
     text: [
       `${tried.length} candidates, ${usable.length} of them without a trip or a broken limit, ${front.length} on the front.`,
       `Chosen: ${found}.`,
-      'A faster or slower loop: every row is a trade that no other beats in all three.',
+      'A faster or slower loop: every row is a trade that no other beats in all three. The charts show each over the start’s.',
     ],
     charts: [pair(0, 1), pair(0, 2), pair(1, 2)],
     table: {

@@ -1,5 +1,5 @@
 /** A wind on one HTML page that needs nothing else: the disc in motion, curves, statistics. */
-import { type Chart, type ChartLine, chartFigure, escaped } from './wind-chart.ts';
+import { CHART_STYLE, type Chart, type ChartAxis, type ChartLine, chartPicture, escaped } from './chart-picture.ts';
 import { type DiscData, moveDisc } from './wind-disc.ts';
 import type { TurbulenceStudy, WindStudy } from './wind-study.ts';
 import { headline, scaling } from './wind-text.ts';
@@ -11,12 +11,9 @@ const LEAD = 3;
 /** The policy forbids the page every request: what it shows is what the file holds. */
 const POLICY = "default-src 'none'; script-src 'unsafe-inline'; style-src 'unsafe-inline'; img-src data:";
 
-/** Lines: Okabe and Ito, *Color Universal Design*, 2008, chosen for each ground. */
-const STYLE = `
-:root { color-scheme: light dark; --ink: #17212b; --faint: #55626e; --grid: #dde3e8; --ground: #f5f7f8; --sheet: #fff;
-  --accent: #00548a; --line-1: #0072b2; --line-2: #d55e00; --line-3: #009e73; --line-4: #cc79a7; }
-@media (prefers-color-scheme: dark) { :root { --ink: #e6ebef; --faint: #a3b0bb; --grid: #2e3841; --ground: #0e1216;
-  --sheet: #151b20; --accent: #7cc4f2; --line-1: #56b4e9; --line-2: #e69f00; --line-3: #009e73; --line-4: #cc79a7; } }
+const STYLE = `${CHART_STYLE}
+:root { --accent: #00548a; }
+@media (prefers-color-scheme: dark) { :root { --accent: #7cc4f2; } }
 * { box-sizing: border-box; }
 body { margin: 0 auto; max-width: 1500px; padding: 0 clamp(10px, 2.5vw, 36px) 2rem; background: var(--ground);
   color: var(--ink); font: 15px/1.45 system-ui, sans-serif; overflow-wrap: anywhere; }
@@ -24,7 +21,7 @@ h1 { font-size: 1.5rem; line-height: 1.2; margin: 1rem 0 .2rem; }
 h2 { font-size: 1.2rem; margin: 1.8rem 0 .6rem; padding-bottom: .2rem; border-bottom: 2px solid var(--grid); }
 h3 { font-size: 1rem; margin: 0; }
 p { margin: .2rem 0; max-width: 90ch; }
-.faint, figcaption ul, .axis, svg text { color: var(--faint); fill: var(--faint); }
+.faint { color: var(--faint); }
 .motion { display: grid; gap: 18px 28px; grid-template-columns: minmax(0, 1fr); margin-top: 1rem; }
 .plots { display: grid; gap: 18px 28px; grid-template-columns: repeat(auto-fill, minmax(min(100%, 480px), 1fr)); }
 @media (min-width: 900px) { .motion { grid-template-columns: minmax(320px, 5fr) 8fr; } }
@@ -38,19 +35,11 @@ button, select { font: inherit; color: var(--ink); background: var(--sheet); bor
 .scale { display: grid; grid-template-columns: 1fr 1fr 1fr; font-size: 12px; }
 .scale i { grid-column: 1 / -1; height: 11px; border-radius: 3px; background: linear-gradient(90deg, #0072b2, #f8f8f8, #d55e00); }
 .scale span:nth-of-type(2) { text-align: center; } .scale span:nth-of-type(3) { text-align: right; }
-figure { margin: 0; min-width: 0; break-inside: avoid; }
-figcaption { display: flex; flex-wrap: wrap; gap: 2px 18px; align-items: baseline; }
-figcaption ul { display: flex; flex-wrap: wrap; gap: 0 16px; list-style: none; margin: 0; padding: 0; font-size: 13px; }
-figcaption li svg { margin-right: 6px; }
-figure > svg { width: 100%; height: auto; display: block; font: 12px system-ui, sans-serif; }
 #time-chart { cursor: pointer; }
-.sheet { fill: var(--sheet); } .grid { stroke: var(--grid); } .mark { stroke: var(--faint); stroke-dasharray: 2 3; }
-.cursor { stroke: var(--ink); stroke-width: 1.4; }
 table { border-collapse: collapse; font-variant-numeric: tabular-nums; }
 .wide { overflow-x: auto; }
 th, td { padding: 3px 14px 3px 0; text-align: right; white-space: nowrap; border-bottom: 1px solid var(--grid); }
 th:first-child, td:first-child { text-align: left; }
-@media (max-width: 700px) { figure > svg { font-size: 19px; } }
 @media print { .controls { display: none; } }
 `;
 
@@ -77,7 +66,7 @@ ${study.turbulence
   .map(({ spectra }) => `<p class="faint">${scaling(spectra)}</p>`)
   .join('')}
 <div class="plots">
-${[profileChart(study), ...study.turbulence.flatMap((t, i) => turbulenceCharts(t, study.turbulence.length > 1 ? ` (${i + 1})` : ''))].map(chartFigure).join('\n')}
+${[profileChart(study), ...study.turbulence.flatMap((t, i) => turbulenceCharts(t, study.turbulence.length > 1 ? ` (${i + 1})` : ''))].map(chartPicture).join('\n')}
 </div>
 <script>(${moveDisc.toString()})(${JSON.stringify(discData(study)).replaceAll('<', '\\u003c')})</script>
 </body>
@@ -99,7 +88,7 @@ function motion(study: WindStudy): string {
 <p id="reading" class="faint" aria-live="off"></p>
 </section>
 <section>
-${timeCharts(study).map(chartFigure).join('\n')}
+${timeCharts(study).map(chartPicture).join('\n')}
 ${study.marks.length > 0 ? `<ul class="faint">${study.marks.map(({ time, text }) => `<li>${time.toFixed(1)} s: ${escaped(text)}</li>`).join('')}</ul>` : ''}
 </section>
 </div>`;
@@ -130,18 +119,18 @@ function extentOf(...series: ArrayLike<number>[]): { lowest: number; highest: nu
 }
 
 /** From the lowest to the highest with some air. */
-function roomFor(label: string, ...series: ArrayLike<number>[]) {
+function roomFor(label: string, ...series: ArrayLike<number>[]): ChartAxis {
   const { lowest, highest } = extentOf(...series);
   const air = Math.max(0.06 * (highest - lowest), 0.02 * Math.abs(highest), 0.1);
-  return { label, from: lowest - air, to: highest + air };
+  return { label, range: [lowest - air, highest + air] };
 }
 
 function timeCharts({ series, duration, marks }: WindStudy): Chart[] {
   const { time, along, across, up, rotorMean, withoutTurbulence, direction } = series;
-  const x = { label: 'Time, s', from: 0, to: duration };
+  const x: ChartAxis = { label: 'Time, s', range: [0, duration] };
   const instants = marks.map((mark) => mark.time);
   const calm: ChartLine[] = withoutTurbulence
-    ? [{ label: 'hub without turbulence', x: time, y: withoutTurbulence, colour: 'ink', dash: '6 4', width: 1.2 }]
+    ? [{ label: 'hub without turbulence', x: time, y: withoutTurbulence, colour: 'ink', dashed: true, width: 1.2 }]
     : [];
   const charts: Chart[] = [
     {
@@ -151,8 +140,8 @@ function timeCharts({ series, duration, marks }: WindStudy): Chart[] {
       y: roomFor('m/s', along, rotorMean),
       marks: instants,
       lines: [
-        { label: 'hub', x: time, y: along, colour: 'line-1', width: 1 },
-        { label: 'mean over the rotor', x: time, y: rotorMean, colour: 'line-2', width: 1.8 },
+        { label: 'hub', x: time, y: along, colour: 0, width: 1 },
+        { label: 'mean over the rotor', x: time, y: rotorMean, colour: 1, width: 1.8 },
         ...calm,
       ],
       width: 860,
@@ -166,8 +155,8 @@ function timeCharts({ series, duration, marks }: WindStudy): Chart[] {
       y: roomFor('m/s', across, up),
       marks: instants,
       lines: [
-        { label: 'across, to the left', x: time, y: across, colour: 'line-3', width: 1 },
-        { label: 'up', x: time, y: up, colour: 'line-4', width: 1 },
+        { label: 'across, to the left', x: time, y: across, colour: 2, width: 1 },
+        { label: 'up', x: time, y: up, colour: 3, width: 1 },
       ],
       width: 860,
       height: 220,
@@ -180,7 +169,7 @@ function timeCharts({ series, duration, marks }: WindStudy): Chart[] {
       x,
       y: roomFor('deg', degrees),
       marks: instants,
-      lines: [{ x: time, y: degrees, colour: 'line-3' }],
+      lines: [{ x: time, y: degrees, colour: 2 }],
       width: 860,
       height: 200,
     });
@@ -192,35 +181,33 @@ function profileChart({ profile: { height, mean, lowest, highest } }: WindStudy)
   return {
     title: 'Along the axis over height',
     x: roomFor('m/s', lowest, highest),
-    y: { label: 'Height above ground, m', from: height[0], to: height[height.length - 1] },
+    y: { label: 'Height above ground, m', range: [height[0], height[height.length - 1]] },
     lines: [
-      { label: 'mean', x: mean, y: height, colour: 'line-1', width: 2.2 },
-      { label: 'lowest and highest', x: lowest, y: height, colour: 'line-2', dash: '5 3' },
-      { label: 'lowest and highest', x: highest, y: height, colour: 'line-2', dash: '5 3' },
+      { label: 'mean', x: mean, y: height, colour: 0, width: 2.2 },
+      { label: 'lowest and highest', x: lowest, y: height, colour: 1, dashed: true },
+      { label: 'lowest and highest', x: highest, y: height, colour: 1, dashed: true },
     ],
   };
 }
 
 function turbulenceCharts({ spectra, rotor, coherence, turbulence }: TurbulenceStudy, number: string): Chart[] {
-  const colours = ['line-1', 'line-3', 'line-4'];
+  const colours = [0, 2, 3];
   const frequencies = extentOf(spectra[0].frequency);
-  const x = {
+  const x: ChartAxis = {
     label: 'Frequency, Hz',
     logarithmic: true,
-    from: frequencies.lowest / 1.2,
-    to: frequencies.highest * 1.1,
+    range: [frequencies.lowest / 1.2, frequencies.highest * 1.1],
   };
-  const density = (...series: ArrayLike<number>[]) => {
+  const density = (...series: ArrayLike<number>[]): ChartAxis => {
     const { lowest, highest } = extentOf(...series);
     return {
       label: 'Power density, m²/s² per Hz',
       logarithmic: true,
-      from: Math.max(lowest, 1e-7 * highest) / 1.6,
-      to: highest * 1.6,
+      range: [Math.max(lowest, 1e-7 * highest) / 1.6, highest * 1.6],
     };
   };
   const target = spectra.map(
-    (s): ChartLine => ({ label: 'due (Kaimal)', x: s.frequency, y: s.target, colour: 'ink', dash: '6 4', width: 1.2 }),
+    (s): ChartLine => ({ label: 'due (Kaimal)', x: s.frequency, y: s.target, colour: 'ink', dashed: true, width: 1.2 }),
   );
   return [
     {
@@ -230,7 +217,7 @@ function turbulenceCharts({ spectra, rotor, coherence, turbulence }: TurbulenceS
       lines: [
         ...target,
         ...spectra.map(
-          (s, i): ChartLine => ({ label: s.what, x: s.frequency, y: s.density, colour: colours[i], dots: true }),
+          (s, i): ChartLine => ({ label: s.what, x: s.frequency, y: s.density, colour: colours[i], points: true }),
         ),
       ],
       bands: spectra.map((s, i) => ({
@@ -246,20 +233,20 @@ function turbulenceCharts({ spectra, rotor, coherence, turbulence }: TurbulenceS
       x,
       y: density(rotor.density, spectra[0].target),
       lines: [
-        { label: 'mean over the rotor', x: rotor.frequency, y: rotor.density, colour: 'line-2', width: 2 },
-        { label: 'hub', x: spectra[0].frequency, y: spectra[0].density, colour: 'line-1', width: 1.2 },
+        { label: 'mean over the rotor', x: rotor.frequency, y: rotor.density, colour: 1, width: 2 },
+        { label: 'hub', x: spectra[0].frequency, y: spectra[0].density, colour: 0, width: 1.2 },
       ],
     },
     ...coherence.map(
       (c): Chart => ({
         title: `Coherence of hub and a point ${Number(c.distance.toFixed(1))} m away${number}`,
-        x: { label: 'Frequency, Hz', from: 0, to: 1.05 * c.frequency[c.frequency.length - 1] },
-        y: { label: `Coherence along the axis, at ${turbulence.meanWind} m/s`, from: 0, to: 1 },
+        x: { label: 'Frequency, Hz', range: [0, 1.05 * c.frequency[c.frequency.length - 1]] },
+        y: { label: `Along the axis, at ${turbulence.meanWind} m/s`, range: [0, 1] },
         lines: [
-          { label: 'due', x: c.frequency, y: c.target, colour: 'ink', dash: '6 4', width: 1.2 },
-          { label: 'estimate', x: c.frequency, y: c.coherence, colour: 'line-1', dots: true },
+          { label: 'due', x: c.frequency, y: c.target, colour: 'ink', dashed: true, width: 1.2 },
+          { label: 'estimate', x: c.frequency, y: c.coherence, colour: 0, points: true },
         ],
-        bands: [{ label: '95 % band', x: c.frequency, low: c.low, high: c.high, colour: 'line-1' }],
+        bands: [{ label: '95 % band', x: c.frequency, low: c.low, high: c.high, colour: 0 }],
       }),
     ),
   ];
