@@ -62,7 +62,7 @@ export function safetyChain(settings: ProtectionSettings, bladeCount: number): P
   /** Whether guard `i` latches at this sample. */
   function latches(i: number, t: number, signals: Readonly<ProtectionSignals>, memory: Float64Array): boolean {
     if (memory[latchedAt + i] === 1) return false;
-    if (guards[i].reading(signals) <= guards[i].threshold) {
+    if (!guards[i].speaks(signals)) {
       memory[speaksAt + i] = Number.NaN;
       return false;
     }
@@ -87,7 +87,7 @@ export function safetyChain(settings: ProtectionSettings, bladeCount: number): P
   function resetIfAllowed(signals: Readonly<ProtectionSignals>, memory: Float64Array): void {
     for (let i = 0; i < guards.length; i++) {
       if (memory[latchedAt + i] !== 1) continue;
-      if (guards[i].reset === 'manual' || guards[i].reading(signals) > guards[i].threshold) return;
+      if (guards[i].reset === 'manual' || guards[i].speaks(signals)) return;
     }
     memory.fill(0, latchedAt, latchedAt + guards.length);
     memory[FIRST] = memory[STOP] = memory[STOP_GUARD] = -1;

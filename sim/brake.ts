@@ -68,6 +68,11 @@ export class Brake {
     return to > from ? Math.min(to, from + change) : Math.max(to, from - change);
   }
 
+  /** Whether it was ordered on or off since the start. */
+  everOrdered(memory: Float64Array): boolean {
+    return memory[this.memoryAt + 3] !== Number.NEGATIVE_INFINITY;
+  }
+
   /** Instants at which the engagement has a kink: the end of the delay and the end of the ramp. */
   firstTorqueAt(memory: Float64Array): number {
     return memory[this.memoryAt + 3] + this.data.delay;

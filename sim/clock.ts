@@ -467,8 +467,11 @@ export class Clock {
     while (this.nextJump < jumps.length && jumps[this.nextJump] <= t) this.nextJump++;
     let cut = end;
     if (this.nextJump < jumps.length && jumps[this.nextJump] < cut) cut = jumps[this.nextJump];
-    const arrival = this.time + plant.pitch.delayRest;
-    if (plant.pitch.delayRest > 0 && arrival > t && arrival < cut) cut = arrival;
+    if (plant.pitch.delayRest > 0) {
+      const arrival = this.time + plant.pitch.delayRest;
+      if (arrival > t && arrival < cut) cut = arrival;
+    }
+    if (!plant.brake.everOrdered(memory)) return cut;
     const firstTorque = plant.brake.firstTorqueAt(memory);
     if (firstTorque > t && firstTorque < cut) cut = firstTorque;
     const fullTorque = plant.brake.fullTorqueAt(memory);

@@ -3,7 +3,7 @@ import { type Guard, speedReading } from './guard.ts';
 /** @param above generator speed, rad/s */
 export function generatorOverspeed(above: number): Guard {
   return {
-    threshold: above,
+    speaks: (signals) => signals.generatorSpeed > above,
     reading: (signals) => signals.generatorSpeed,
     describe: (reading) => speedReading(reading, above),
   };

@@ -2,7 +2,7 @@ import type { Guard } from './guard.ts';
 
 export function gridLoss(): Guard {
   return {
-    threshold: 0.5,
+    speaks: (signals) => !signals.gridConnected,
     reading: (signals) => (signals.gridConnected ? 0 : 1),
     describe: () => 'no grid voltage',
   };

@@ -1,5 +1,5 @@
 /**
- * A guard turns the hard-wired signals into one reading and says when it is too much.
+ * A guard looks at the hard-wired signals and says when they are too much.
  *
  * To write a guard: one file here that returns a `Guard`, one line in `index.ts`, its settings in
  * `../protection.ts` and its keys in `scenarios/schema/protection.ts`.
@@ -7,10 +7,10 @@
 import type { ProtectionSignals } from '../contract.ts';
 
 export interface Guard {
+  /** Whether the signals are too much. Asked at every sample. */
+  speaks(signals: Readonly<ProtectionSignals>): boolean;
+  /** What it then goes by, and that in words for a person, such as "13.5 rpm above 13.4 rpm". */
   reading(signals: Readonly<ProtectionSignals>): number;
-  /** The guard speaks while its reading is above this. */
-  readonly threshold: number;
-  /** Reading and threshold for a person, such as "13.5 rpm above 13.4 rpm". */
   describe(reading: number): string;
 }
 

@@ -2,7 +2,7 @@ import type { Guard } from './guard.ts';
 
 export function manualButton(): Guard {
   return {
-    threshold: 0.5,
+    speaks: (signals) => signals.buttonPressed,
     reading: (signals) => (signals.buttonPressed ? 1 : 0),
     describe: () => 'stop button is pressed',
   };

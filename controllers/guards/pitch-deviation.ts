@@ -3,7 +3,12 @@ import type { Guard } from './guard.ts';
 /** Largest distance of any blade from where it was sent. @param above rad */
 export function pitchDeviation(above: number): Guard {
   return {
-    threshold: above,
+    speaks(signals) {
+      for (let b = 0; b < signals.pitch.length; b++) {
+        if (Math.abs(signals.pitchDemand[b] - signals.pitch[b]) > above) return true;
+      }
+      return false;
+    },
     reading(signals) {
       let largest = 0;
       for (let b = 0; b < signals.pitch.length; b++) {

@@ -35,6 +35,19 @@ const LEAST_COSINE = 0.05;
  */
 export function surfaceRotor(surface: CoefficientSurface): Rotor {
   const share = { torque: 0, thrust: 0 };
+  /** The last question with one angle for all blades: a fixed-step integrator begins with what the clock has just asked. */
+  const last = { wind: Number.NaN, rotorSpeed: Number.NaN, pitch: Number.NaN, torque: 0, thrust: 0 };
+
+  function ofAllBlades(wind: number, rotorSpeed: number, pitch: number, out: RotorLoads): void {
+    if (wind !== last.wind || rotorSpeed !== last.rotorSpeed || pitch !== last.pitch) {
+      surface.torqueAndThrust(wind, rotorSpeed, pitch, last);
+      last.wind = wind;
+      last.rotorSpeed = rotorSpeed;
+      last.pitch = pitch;
+    }
+    out.torque = last.torque;
+    out.thrust = last.thrust;
+  }
 
   function addBlade(wind: number, rotorSpeed: number, pitch: number, bladeCount: number, out: RotorLoads): void {
     surface.torqueAndThrust(wind, rotorSpeed, pitch, share);
@@ -53,7 +66,7 @@ export function surfaceRotor(surface: CoefficientSurface): Rotor {
       let alike = true;
       for (let b = 1; b < pitchAt.length; b++) alike = alike && x[pitchAt[b]] === first;
       if (alike) {
-        surface.torqueAndThrust(relativeWind, rotorSpeed, first, out);
+        ofAllBlades(relativeWind, rotorSpeed, first, out);
         return;
       }
       out.torque = 0;
