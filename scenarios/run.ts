@@ -112,6 +112,7 @@ export function runScenario(
       inputs: [...scenario.inputs],
       overrides: [...scenario.overrides],
       seed: scenario.seed,
+      rotorModel: rotor instanceof BladeElementRotor ? 'blade element' : 'surface',
       integrator: clock.integrator.name,
       relativeTolerance: clock.integrator.relativeTolerance,
       steps: clock.lastTick,

@@ -83,6 +83,7 @@ const summarySchema = z.object({
     inputs: z.array(z.object({ path: z.string(), sha256: z.string() })),
     overrides: z.array(z.string()),
     seed: z.number(),
+    rotorModel: z.enum(['surface', 'blade element']),
     integrator: z.string(),
     relativeTolerance: z.number().nullable(),
     steps: z.number(),

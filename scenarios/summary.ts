@@ -87,6 +87,7 @@ export interface Summary {
     inputs: { path: string; sha256: string }[];
     overrides: string[];
     seed: number;
+    rotorModel: 'surface' | 'blade element';
     integrator: string;
     relativeTolerance: number | null;
     steps: number;

@@ -12,7 +12,8 @@ export function provenanceFold(runs: readonly Run[]): HTMLElement {
 }
 
 function provenanceTable({ name, summary }: Run): HTMLElement {
-  const { version, seed, integrator, relativeTolerance, steps, evaluations, overrides, inputs } = summary.provenance;
+  const { version, seed, rotorModel, integrator, relativeTolerance, steps, evaluations, overrides, inputs } =
+    summary.provenance;
   return element(
     'div',
     { class: 'scroll' },
@@ -25,6 +26,7 @@ function provenanceTable({ name, summary }: Run): HTMLElement {
         {},
         tableRow('galehold', version),
         tableRow('Scenario', summary.scenario.name),
+        tableRow('Rotor', rotorModel),
         tableRow('Seed', String(seed)),
         tableRow(
           'Integrator',

@@ -50,6 +50,7 @@ function summary(changes: Partial<Summary> = {}): Summary {
       inputs: [],
       overrides: [],
       seed: 1,
+      rotorModel: 'surface',
       integrator: 'runge-kutta',
       relativeTolerance: null,
       steps: 1,

@@ -7,6 +7,7 @@ import { instantPage, instantPicture } from '../../cli/blade-instant-picture.ts'
 import { loadScenario, shippedFolder } from '../../scenarios/disk.ts';
 import { writeResult } from '../../scenarios/results.ts';
 import { runScenario } from '../../scenarios/run.ts';
+import { readStoredResult } from '../../scenarios/stored-result.ts';
 import { cachedSurface } from '../../scenarios/surface-cache.ts';
 
 const DEGREE = Math.PI / 180;
@@ -29,6 +30,14 @@ beforeAll(async () => {
   }
 });
 afterAll(() => rm(around, { recursive: true }));
+
+describe('The summary of a run', () => {
+  it('says which rotor ran', async () => {
+    const modelOf = async (folder: string) => (await readStoredResult(folder)).summary.provenance.rotorModel;
+    expect(await modelOf(whole())).toBe('blade element');
+    expect(await modelOf(surface())).toBe('surface');
+  });
+});
 
 describe('The air at the blades at an instant of a run', () => {
   it('is told at five or more stations of each blade, with triangles that close', async () => {

@@ -194,6 +194,7 @@ export function inventRun(choice: Partial<Invention> = {}): ViewedRun & Result {
       inputs: [{ path: `${name}.yaml`, sha256: '0'.repeat(64) }],
       overrides: [],
       seed: 1,
+      rotorModel: 'surface',
       integrator: 'invented',
       relativeTolerance: null,
       steps: count,
