@@ -23,6 +23,22 @@ export interface ShaftTorques {
   generatorAcceleration: number;
 }
 
+/** Nothing turns, nothing holds. */
+export function idleTorques(): ShaftTorques {
+  return {
+    aerodynamic: 0,
+    generator: 0,
+    brakeLow: 0,
+    brakeHigh: 0,
+    inertiaChange: 0,
+    shaft: 0,
+    geared: 0,
+    loss: 0,
+    rotorAcceleration: 0,
+    generatorAcceleration: 0,
+  };
+}
+
 /**
  * Two inertias on a torsional spring, with gearbox and bearing losses:
  * J_r ω̇_r = Q_a − Q_s − Q_loss − Q_b,low;  J_g ω̇_g = η Q_s/N − Q_g − Q_b,high;  γ̇ = ω_r − ω_g/N;

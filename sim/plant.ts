@@ -1,5 +1,5 @@
 import { Brake } from './brake.ts';
-import { Drivetrain, type ShaftTorques } from './drivetrain.ts';
+import { Drivetrain, idleTorques, type ShaftTorques } from './drivetrain.ts';
 import { Generator } from './generator.ts';
 import { Layout } from './layout.ts';
 import { PitchDrives } from './pitch-drive.ts';
@@ -54,18 +54,7 @@ export class Plant {
   readonly loads: RotorLoads;
   readonly motion: RotorMotion = stillMotion();
   readonly accelerations: RotorCarrier = { foreAft: 0, sideSide: 0, speed: 0 };
-  readonly torques: ShaftTorques = {
-    aerodynamic: 0,
-    generator: 0,
-    brakeLow: 0,
-    brakeHigh: 0,
-    shaft: 0,
-    geared: 0,
-    loss: 0,
-    inertiaChange: 0,
-    rotorAcceleration: 0,
-    generatorAcceleration: 0,
-  };
+  readonly torques: ShaftTorques = idleTorques();
   brakeTorque = 0;
   /** Of the wind from the nacelle's axis, rad. */
   yawError = 0;

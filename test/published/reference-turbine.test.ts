@@ -2,7 +2,7 @@
 import { describe, expect, it } from 'vitest';
 import { gainSchedule } from '../../controllers/gain-schedule.ts';
 import { machineOf } from '../../scenarios/machine.ts';
-import { Drivetrain, type ShaftTorques } from '../../sim/drivetrain.ts';
+import { Drivetrain, idleTorques } from '../../sim/drivetrain.ts';
 import { rungeKutta } from '../../sim/integrators/runge-kutta.ts';
 import { Layout } from '../../sim/layout.ts';
 import type { DrivetrainData } from '../../sim/turbine.ts';
@@ -68,18 +68,7 @@ describe('check 4: the drivetrain of the reference turbine', () => {
 
   it('rings at that frequency when it is let go wound up', () => {
     const drivetrain = new Drivetrain(data, new Layout());
-    const q: ShaftTorques = {
-      aerodynamic: 0,
-      generator: 0,
-      brakeLow: 0,
-      brakeHigh: 0,
-      shaft: 0,
-      geared: 0,
-      loss: 0,
-      inertiaChange: 0,
-      rotorAcceleration: 0,
-      generatorAcceleration: 0,
-    };
+    const q = idleTorques();
     const integrator = rungeKutta(
       (_t, x, dx) => {
         drivetrain.balance(x, q);

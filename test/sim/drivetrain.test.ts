@@ -1,5 +1,5 @@
 import { describe, expect, it } from 'vitest';
-import { Drivetrain, type ShaftTorques } from '../../sim/drivetrain.ts';
+import { Drivetrain, idleTorques, type ShaftTorques } from '../../sim/drivetrain.ts';
 import { Layout } from '../../sim/layout.ts';
 import type { DrivetrainData } from '../../sim/turbine.ts';
 import { TURBINE } from './test-turbine.ts';
@@ -9,19 +9,7 @@ function drivetrain(changes: Partial<DrivetrainData> = {}): Drivetrain {
 }
 
 function torques(changes: Partial<ShaftTorques> = {}): ShaftTorques {
-  return {
-    aerodynamic: 0,
-    generator: 0,
-    brakeLow: 0,
-    brakeHigh: 0,
-    inertiaChange: 0,
-    shaft: 0,
-    geared: 0,
-    loss: 0,
-    rotorAcceleration: 0,
-    generatorAcceleration: 0,
-    ...changes,
-  };
+  return { ...idleTorques(), ...changes };
 }
 
 describe('The gearbox', () => {
