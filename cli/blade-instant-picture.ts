@@ -1,8 +1,10 @@
 /** The blades at an instant as one picture: triangles to scale, and angles of attack between the angles of stall. */
+
+import { escaped } from '../scenarios/markup.ts';
 import type { BladeInstant } from './blade-instant.ts';
 import { instantText } from './blade-instant.ts';
 import { degrees, INK, MARGIN, PANEL_WIDTH, type Panel, px, svgText, trianglePanel } from './blade-picture.ts';
-import { CHART_STYLE, type ChartLine, chartPicture, escaped } from './chart-picture.ts';
+import { CHART_STYLE, type ChartLine, chartPicture } from './chart-picture.ts';
 
 const DEGREE = Math.PI / 180;
 /** Stations of each blade whose triangles are drawn: five, from root to tip. */

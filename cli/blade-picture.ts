@@ -1,8 +1,9 @@
 /** The blade's velocity triangles and angles of attack as one picture, in plain SVG. */
+
+import { escaped } from '../scenarios/markup.ts';
 import { type VelocityTriangle, velocityTriangles } from '../sim/aerodynamics/velocity-triangles.ts';
 import { bladeText, pointText, totalsText } from './blade-text.ts';
 import type { BladeView } from './blade-view.ts';
-import { escaped } from './chart-picture.ts';
 
 /** Okabe and Ito, *Color Universal Design*, 2008. */
 export const INK = '#000000';

@@ -1,5 +1,7 @@
 /** Charts as plain SVG under their title and key: lines, points and bands over linear or logarithmic axes. */
 
+import { escaped } from '../scenarios/markup.ts';
+
 export interface ChartAxis {
   label: string;
   logarithmic?: boolean;
@@ -303,8 +305,4 @@ function colourOf(colour: number | 'ink'): string {
 /** To a tenth, and not so far outside the picture that renderers lose their way. */
 function px(value: number): string {
   return Math.max(-4000, Math.min(4000, value)).toFixed(1);
-}
-
-export function escaped(text: string): string {
-  return text.replaceAll('&', '&amp;').replaceAll('<', '&lt;').replaceAll('>', '&gt;').replaceAll('"', '&quot;');
 }

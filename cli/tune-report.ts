@@ -1,9 +1,10 @@
 /** The report on a tuned loop as one HTML page without a script. */
 import { gainSchedule } from '../controllers/gain-schedule.ts';
+import { escaped } from '../scenarios/markup.ts';
 import type { ControllerData } from '../scenarios/scenario.ts';
 import type { TrimPoint } from '../sim/trim.ts';
 import { logarithm } from '../tuning/complex.ts';
-import { CHART_STYLE, type Chart, type ChartLine, chartPicture, escaped } from './chart-picture.ts';
+import { CHART_STYLE, type Chart, type ChartLine, chartPicture } from './chart-picture.ts';
 import { type LoopView, loopView, pitchLawOf } from './loop-view.ts';
 import type { ScenarioSubject } from './tuning-subject.ts';
 

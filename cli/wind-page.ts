@@ -1,5 +1,7 @@
 /** A wind on one HTML page that needs nothing else: the disc in motion, curves, statistics. */
-import { CHART_STYLE, type Chart, type ChartAxis, type ChartLine, chartPicture, escaped } from './chart-picture.ts';
+
+import { escaped } from '../scenarios/markup.ts';
+import { CHART_STYLE, type Chart, type ChartAxis, type ChartLine, chartPicture } from './chart-picture.ts';
 import { type DiscData, moveDisc } from './wind-disc.ts';
 import type { TurbulenceStudy, WindStudy } from './wind-study.ts';
 import { headline, scaling } from './wind-text.ts';

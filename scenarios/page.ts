@@ -1,4 +1,5 @@
 /** Puts results and the built viewer together into one HTML file that needs nothing else. Runs in a browser and in Node. */
+import { escaped } from './markup.ts';
 import { type Column, type PackedColumn, packColumns } from './packed-column.ts';
 import { CAUTION, type Summary } from './summary.ts';
 
@@ -123,7 +124,7 @@ function html(template: PageTemplate, data: PageData): string {
 <meta name="viewport" content="width=device-width, initial-scale=1">
 <meta name="color-scheme" content="light dark">
 <link rel="icon" href="data:,">
-<title>${escapeMarkup(data.title)}</title>
+<title>${escaped(data.title)}</title>
 <style>${template.style.replaceAll('</', '<\\/')}</style>
 </head>
 <body>
@@ -133,10 +134,6 @@ function html(template: PageTemplate, data: PageData): string {
 </body>
 </html>
 `;
-}
-
-function escapeMarkup(text: string): string {
-  return text.replaceAll('&', '&amp;').replaceAll('<', '&lt;').replaceAll('>', '&gt;');
 }
 
 /** JSON in which nothing can end the script element or, read as a script, a string. */
