@@ -231,6 +231,21 @@ describe('the surface rotor', () => {
     expect(loads.thrust).toBeCloseTo(expected.thrust, 3);
   });
 
+  it('answers every new question anew: wind, speed or pitch alone may have changed since the last', () => {
+    const expected = { torque: 0, thrust: 0 };
+    for (const [t, speed, pitch] of [
+      [2, 1.2, 0.1],
+      [2, 1.2, 0.2],
+      [2, 1.1, 0.2],
+      [3, 1.1, 0.2],
+      [3, 1.1, 0.2],
+    ]) {
+      rotor.loads(t, wind, { ...stillMotion(), speed }, [pitch], 0, [0], [], loads);
+      surface.torqueAndThrust(wind.rotorMean(t), speed, pitch, expected);
+      expect([loads.torque, loads.thrust]).toEqual([expected.torque, expected.thrust]);
+    }
+  });
+
   it('settles on the same loads in uniform wind', () => {
     const settled = { torque: 0, thrust: 0 };
     rotor.loads(2, wind, { ...stillMotion(), speed: 1.2 }, [0.1], 0, [0], [], loads);
